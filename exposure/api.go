@@ -1,0 +1,46 @@
+package exposure
+
+import "context"
+
+// Options of a model, set once.
+type Options struct {
+	// Workers is the number of goroutines a long question may use; 0 = one for
+	// each processor. Answers do not depend on it.
+	Workers int
+	// Progress, when not nil, is told the share of the work that is done; it may
+	// be called from several goroutines.
+	Progress func(done float64)
+}
+
+// DistanceQuery asks for keep-out distances.
+type DistanceQuery struct {
+	Classes []string // nil = every class of the limit table
+	// Direction asks for the outermost crossing along one ray instead of the
+	// six extents.
+	Direction           *RayDirection
+	Rows, Housings, All bool // which; all false = all true
+}
+
+// RayDirection is a direction in space: azimuth clockwise from the site's y
+// axis, elevation above the horizon, in rad.
+type RayDirection struct{ AzimuthRad, ElevationRad float64 }
+
+// ZoneQuery asks for boundaries.
+type ZoneQuery struct {
+	Surfaces    []string // nil = every surface
+	Classes     []string // nil = every class of the limit table
+	ResolutionM float64  // 0 = 0.05
+	Share       float64  // of the limit, 0 = 1
+	// Level asks for a field level instead of the limits: V/m of E or W/m2 of S.
+	LevelEVPerM, LevelSWPerM2 float64
+	Section                   *Section // a vertical section instead of surfaces
+}
+
+// API is what a Model answers; it is written out here so that one page shows it.
+type API interface {
+	Sources() []SourceInfo
+	Field(ctx context.Context, places []Place) ([]PointResult, error)
+	Distances(ctx context.Context, q DistanceQuery) ([]Distance, error)
+	Zones(ctx context.Context, q ZoneQuery) ([]Zone, error)
+	Assess(ctx context.Context, q ZoneQuery) (*Assessment, error)
+}
