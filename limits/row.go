@@ -1,5 +1,7 @@
 package limits
 
+import "math"
+
 // Quantity is what a level limits.
 type Quantity string
 
@@ -70,6 +72,7 @@ type Row struct {
 	AreaM2         float64 // averaging area, 0 = none stated
 	HasBrief       bool
 	BriefA, BriefB float64 // incident energy BriefA + BriefB*sqrt(t) in J/m2, t in s
+	BriefExp       float64 // that energy times (f/FUnitHz)^BriefExp; 0 = the same over the band
 	Region         Region
 	Effect         Effect
 	Kind           Kind
@@ -123,6 +126,43 @@ type At struct {
 	TimeAveraging bool    // only where every row that holds allows it
 	Rows          []int   // indices into Table.Rows of the rows that hold
 }
+
+// Level returns the row's level at fHz in the SI unit of its quantity, or +Inf
+// where the row sets none. It does not ask whether the row holds there.
+func (r Row) Level(fHz float64) float64 {
+	if r.None {
+		return math.Inf(1)
+	}
+	return LevelAt(r.Coefficient, r.Exponent, r.FUnitHz, fHz)
+}
+
+// AveragingTime returns the row's averaging time at fHz in s, 0 where the level
+// is never averaged.
+func (r Row) AveragingTime(fHz float64) float64 {
+	return AveragingTime(r.AverageS, r.AverageExp, r.AverageFUnitHz, fHz)
+}
+
+// BriefEnergy returns the incident energy density in J/m2 that the row allows
+// an exposure of tS seconds, and whether it says so at all: it does for
+// durations from 0 to the averaging time, on rows with brief terms.
+func (r Row) BriefEnergy(fHz, tS float64) (jPerM2 float64, ok bool) {
+	if !r.HasBrief || !(tS >= 0) || tS > r.AveragingTime(fHz) {
+		return 0, false
+	}
+	return BriefEnergy(r.BriefA, r.BriefB, r.BriefExp, r.FUnitHz, fHz, tS), true
+}
+
+// Holds reports whether the row's band holds fHz, edges included.
+func (r Row) Holds(fHz float64) bool {
+	return fHz >= r.FromHz*(1-edgeSlack) && fHz <= r.ToHz*(1+edgeSlack)
+}
+
+// Group returns the group the row belongs to.
+func (r Row) Group() Group { return Group{r.Effect, r.Region, r.Kind} }
+
+// edgeSlack is the relative distance within which a frequency meets a band edge:
+// frequencies typed in different units may differ in their last bits.
+const edgeSlack = 1e-12
 
 // Covered reports whether the table speaks at this frequency: with a level, or
 // with a deliberate gap.
