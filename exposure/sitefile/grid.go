@@ -3,11 +3,19 @@ package sitefile
 import (
 	"fmt"
 	"strings"
+
+	"example.org/standclear/exposure"
 )
 
 // grid is one table as its carrier (a CSV file or a sheet) gives it: text cells
 // in rows, the comment rows kept apart, nothing interpreted. Both carriers make
-// grids, and everything after that is shared.
+// grids, and everything after that is shared:
+//
+//	readCSV(file, table string, data []byte, windows1252 bool) (*grid, Faults)
+//	readWorkbook(file string, data []byte) ([]*grid, Faults)
+//
+// Either may return grids and faults together; a fault means that nothing of
+// the input is used, yet the rest is read on to find the other faults.
 type grid struct {
 	table string // antennas, in lower case: the name the schema knows
 	file  string // antennas.csv, or site.xlsx
@@ -19,6 +27,9 @@ type grid struct {
 	rows []gridRow
 	// comments are the rows whose first cell starts with #, wherever they stand.
 	comments []gridRow
+	// warnings are what the carrier noticed (a hidden row, a sheet of an unknown
+	// name): things an assessor must know that do not stop the reading.
+	warnings []exposure.Warning
 }
 
 // gridRow is one row of a grid.

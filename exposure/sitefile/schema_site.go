@@ -1,0 +1,140 @@
+package sitefile
+
+import "strings"
+
+// siteTable has one item a row.
+var siteTable = TableSchema{
+	Name: "site", Required: true, Vertical: true,
+	Help: "what the site is and how its axes lie: one item a row",
+	Columns: []ColumnSchema{
+		text("name", "name of the site, as the report prints it", required, example("Mill Lane roof")),
+		text("reference", "your own reference of the job", example("J-0001")),
+		quantity("latitude", "deg", "WGS 84 latitude of x = y = 0; needed for map files", between(-90, 90), example("")),
+		quantity("longitude", "deg", "WGS 84 longitude of x = y = 0", between(-180, 180), example("")),
+		text("datum", "what z = 0 is", example("finished roof level")),
+		quantity("grid bearing", "deg", "true bearing of the y axis: lets x and y follow a parapet", blank("0"), between(-360, 360)),
+		choice("azimuth reference", "true|grid|magnetic", "what azimuths are counted from: true north, the y axis, or magnetic north", blank("true")),
+		quantity("declination", "deg", "magnetic declination, east positive; with magnetic azimuths", between(-180, 180)),
+		text("prepared for", "client"),
+		text("prepared by", "who did the work"),
+		text("assessor", "licensed assessor who signs"),
+		text("licence", "the assessor's licence"),
+		date("survey date", "day of the survey"),
+		date("report date", "the only date that a report prints"),
+		choice("decision rule", "simple|guarded", "how the uncertainty of a reading enters its verdict", blank("simple")),
+		choice("ground", "none|factor|fresnel", "how reflection from the ground counts", blank("none")),
+		number("ground factor", "field factor of a reflecting ground: 1.6 or 2", between(1, 2)),
+		number("ground permittivity", "relative permittivity of the ground; with fresnel", atLeast(1)),
+		quantity("ground conductivity", "S/m", "conductivity of the ground; with fresnel", atLeast(0)),
+		quantity("ground z", "m", "height of the reflecting plane above the datum; with fresnel"),
+		text("note", "kept and printed, never interpreted"),
+	},
+}
+
+var operatorsTable = TableSchema{
+	Name: "operators",
+	Help: "who is called before a transmitter is switched off",
+	Columns: []ColumnSchema{
+		text("operator", "name, as the antennas table has it", required, example("Operator 1")),
+		text("contact", "whom to call", example("duty desk, 555-0100")),
+		text("notice", "how long before a switch-off", example("5 working days")),
+	},
+}
+
+var surfacesTable = TableSchema{
+	Name: "surfaces",
+	Help: "where people walk: flat areas on which boundaries are drawn",
+	Columns: []ColumnSchema{
+		text("id", "name of the surface", required, example("roof")),
+		text("outline", "WKT POLYGON in site metres, x east and y north", required, example("POLYGON((0 0, 30 0, 30 20, 0 20, 0 0))")),
+		quantity("z", "m", "height above the site datum", required, example("0")),
+		text("class", "who may be there: a class of the limit table", required, example("public")),
+		quantity("from", "m", "lower end of the body above the surface", blank("0"), atLeast(0)),
+		quantity("to", "m", "upper end of the body above the surface", blank("2"), atLeast(0)),
+		choice("averaging", "limit|peak", "over the body: as the limit row says, or always the largest", blank("limit")),
+		number("ground factor", "field factor of the surface's own reflection; blank = the site's ground", between(1, 2)),
+		text("note", "kept and printed, never interpreted"),
+	},
+}
+
+var placesTable = TableSchema{
+	Name: "places",
+	Help: "single points, or people standing at them",
+	Columns: []ColumnSchema{
+		text("id", "name of the place", required, example("roof door")),
+		quantity("x", "m", "east of the site's origin", required, example("2")),
+		quantity("y", "m", "north of the site's origin", required, example("3")),
+		quantity("z", "m", "height above the site datum: the point, or the feet", unless("on"), example("0")),
+		text("on", "the surface it stands on, in place of z"),
+		quantity("from", "m", "lower end of the body above z", blank("0"), atLeast(0)),
+		quantity("to", "m", "upper end of the body above z; 0 = a point, 2 = a person", blank("0"), atLeast(0), example("2")),
+		text("class", "who may be there: a class of the limit table", required, example("public")),
+		quantity("wall loss", "dB", "loss of the wall in front of it", blank("0"), atLeast(0)),
+		text("note", "kept and printed, never interpreted"),
+	},
+}
+
+// builtinPatterns are the names that the pattern column knows by itself.
+var builtinPatterns = strings.Split("isotropic|half-wave dipole|two-beamwidth|omni|sector|dish|short dipole|monopole|small loop|active", "|")
+
+var antennasTable = TableSchema{
+	Name: "antennas", Required: true,
+	Help: "one row per antenna input and frequency",
+	Columns: []ColumnSchema{
+		text("id", "name of the row", required, example("A1")),
+		text("operator", "who runs it", example("Operator 1")),
+		text("operator reference", "the operator's own name for it", rare),
+		text("service", "what it carries", example("mobile, 1800 MHz")),
+		text("housing", "rows in one housing are one physical antenna and share its position", example("P1")),
+		text("transmitter", "rows that can only be switched together; blank = the signal, else the id", rare),
+		text("signal", "rows that share it carry one signal: their fields add in amplitude", rare),
+		choice("state", "on|standby", "standby rows count like those that are on, unless asked otherwise", blank("on"), example("on")),
+		quantity("x", "m", "east of the site's origin", unless("latitude, or the housing's"), example("10")),
+		quantity("y", "m", "north of the site's origin", unless("longitude, or the housing's"), example("5")),
+		quantity("z", "m", "centre of radiation above the site datum", unless("on and height, or the housing's"), example("6")),
+		quantity("latitude", "deg", "WGS 84 latitude, in place of y", between(-90, 90), rare),
+		quantity("longitude", "deg", "WGS 84 longitude, in place of x", between(-180, 180), rare),
+		text("on", "the surface it stands on; with height, in place of z", rare),
+		quantity("height", "m", "centre of radiation above that surface", rare),
+		quantity("azimuth", "deg", "direction of the main beam, clockwise from the site's azimuth reference", unless("a round pattern, or the housing's"), between(-360, 360), example("120")),
+		quantity("tilt", "deg", "mechanical tilt, down is positive", blank("0"), between(-90, 90), example("0")),
+		quantity("electrical tilt", "deg", "electrical tilt, down is positive; of a pattern file it describes the file", blank("0"), between(-90, 90), example("4")),
+		quantity("roll", "deg", "about boresight, clockwise from behind", blank("0"), between(-180, 180), rare),
+		choice("polarization", "vertical|horizontal|slant|circular", "of the radiated electric field", blank("vertical"), example("slant")),
+		text("pattern", "a built-in name ("+strings.Join(builtinPatterns, ", ")+") or a file in the site folder", required, example("two-beamwidth")),
+		quantity("gain", "dBi", "peak gain; may be blank where pattern or file fixes it", example("17.5")),
+		quantity("horizontal beamwidth", "deg", "between the 3 dB points", overTo(0, 360), example("65")),
+		quantity("vertical beamwidth", "deg", "between the 3 dB points", overTo(0, 180), example("7")),
+		quantity("front to back", "dB", "largest loss of two-beamwidth and sector patterns", blank("30"), moreThan(0)),
+		choice("vertical cut", "up|down", "sense of positive angles in a file whose vertical cut does not say", rare),
+		quantity("length", "m", "of the array or wire; height of a monopole", moreThan(0), example("2")),
+		quantity("width", "m", "of the housing", moreThan(0), rare),
+		quantity("diameter", "m", "of a dish", moreThan(0), rare),
+		share("efficiency", "of a dish's aperture; blank = from the gain", overTo(0, 1), rare),
+		number("elements", "in the vertical array; blank = from the length", whole(1, 10000), rare),
+		quantity("spacing", "m", "between the elements; blank = length / elements", moreThan(0), rare),
+		number("elements across", "columns of an active panel", whole(1, 10000), rare),
+		quantity("spacing across", "m", "between the columns", moreThan(0), rare),
+		quantity("scan range", "deg", "to either side, of an active panel's beams", between(0, 90), rare),
+		quantity("scan range down", "deg", "up and down, of an active panel's beams", between(0, 90), rare),
+		quantity("frequency", "MHz", "of the carriers", required, moreThan(0), example("1800")),
+		quantity("power", "W", "one carrier's mean over its modulation while transmitting, at the transmitter's output", unless("EIRP or ERP"), atLeast(0), orWord("unknown"), example("40")),
+		quantity("EIRP", "W", "of one carrier, in place of power and loss", atLeast(0), orWord("unknown"), rare),
+		quantity("ERP", "W", "of one carrier over a half-wave dipole, in place of power and loss", atLeast(0), orWord("unknown"), rare),
+		quantity("loss", "dB", "between transmitter and antenna", blank("0"), atLeast(0), example("1.5")),
+		number("carriers", "of that power", blank("1"), moreThan(0), example("2")),
+		share("duty", "share of the time on air: TDD share, pulse duty", blank("1"), between(0, 1), example("1")),
+		share("power reduction factor", "actual-maximum share of the configured power", blank("1"), between(0, 1)),
+		quantity("sweep", "deg", "sector swept by a rotating antenna; blank = it does not rotate", overTo(0, 360), rare),
+		quantity("peak factor", "dB", "peak over mean while transmitting", blank("0"), atLeast(0), rare),
+		choice("method", "auto|far field|cylindrical|array|aperture|wire", "how its field is computed", blank("auto"), example("auto")),
+		quantity("power uncertainty", "dB", "standard uncertainty", blank("0"), atLeast(0), rare),
+		quantity("gain uncertainty", "dB", "standard uncertainty", blank("0"), atLeast(0), rare),
+		quantity("tilt uncertainty", "deg", "standard uncertainty", blank("0"), atLeast(0), rare),
+		quantity("azimuth uncertainty", "deg", "standard uncertainty", blank("0"), atLeast(0), rare),
+		quantity("position uncertainty", "m", "standard uncertainty", blank("0"), atLeast(0), rare),
+		text("data from", "who gave these figures", example("operator's data sheet")),
+		date("data date", "when", example("2026-03-31")),
+		text("note", "kept and printed, never interpreted"),
+	},
+}
