@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strconv"
 	"strings"
 
 	"example.org/standclear/antenna"
@@ -69,7 +70,7 @@ func Plan(d PlanData) (f *Figure, err error) {
 	m := &chart{page: p, site: d.Site, classes: d.Classes, zones: zonesOf(d.Zones, surface.ID)}
 	p.heading(title, bodySentence(surface), m.resolutionSentence())
 
-	side := seen.W() < 1.7*seen.H() // the key stands beside a tall plan, beneath a wide one
+	side := seen.W() < 1.2*seen.H() // the key stands beside a tall plan, beneath a wide one
 	m.panel(seen, side)
 	m.outline = openRings(m.rings(exposure.MultiPolygon{surface.Outline}))
 	m.field(d.Grid, m.outline)
@@ -79,6 +80,7 @@ func Plan(d PlanData) (f *Figure, err error) {
 				closed := append([]pt(nil), r...)
 				p.lines(m.clipped(closed), otherStroke)
 			}
+			m.nameSurface(o)
 		}
 	}
 	m.areas()
@@ -99,11 +101,17 @@ func Plan(d PlanData) (f *Figure, err error) {
 	if far > 0 {
 		notes = append(notes, fmt.Sprintf("%s outside this figure; computed all the same.", count(far, "antenna row lies", "antenna rows lie")))
 	}
-	caution := d.Caution
-	if caution == "" {
-		caution = Caution
+	return p.foot(title, append(notes, cautionOr(d.Caution))...), nil
+}
+
+// nameSurface writes the name of a neighbouring surface within it, where there
+// is room.
+func (m *chart) nameSurface(o *exposure.Surface) {
+	rings := openRings(m.rings(exposure.MultiPolygon{o.Outline}))
+	b, ok := around(rings...)
+	if c := b.centre(); ok && m.Box.contains(c) && within(rings, c) && b.W() > labelFace.width(o.ID) {
+		m.tags = append(m.tags, tag{text: shorten(o.ID, 24), face: contourFace, seats: []pt{c, {c[0], c[1] + 12}, {c[0], c[1] - 12}, {c[0], c[1] + 24}, {c[0], c[1] - 24}}})
 	}
-	return p.foot(title, append(notes, caution)...), nil
 }
 
 func zonesOf(zones []exposure.Zone, surface string) []exposure.Zone {
@@ -114,6 +122,13 @@ func zonesOf(zones []exposure.Zone, surface string) []exposure.Zone {
 		}
 	}
 	return out
+}
+
+func cautionOr(c string) string {
+	if c == "" {
+		return Caution
+	}
+	return c
 }
 
 func bodySentence(s *exposure.Surface) string {
@@ -242,7 +257,7 @@ func (m *chart) field(g *exposure.RatioGrid, inside [][]pt) {
 		}
 		m.lines(drawn, contourStroke)
 		for _, c := range longest(drawn, 2) {
-			m.tags = append(m.tags, tag{text: digits(l, 2), face: contourFace, seats: alongLine(c)})
+			m.tags = append(m.tags, tag{text: strconv.FormatFloat(l, 'g', -1, 64), face: contourFace, seats: alongLine(c)})
 		}
 	}
 	text := "contour lines and grey: exposure ratio 0.05, 0.2, 1, 5"

@@ -52,5 +52,5 @@ var (
 )
 
 // Caution stands at the foot of every figure of predicted exposure.
-const Caution = "Computed from the data supplied; the model is not the site. Silence is no verdict: what the limits supplied do not cover is not assessed. " +
+const Caution = "Computed from the data supplied; the model is not the site. What the limits supplied do not cover is not assessed. " +
 	"To be reviewed by the assessor who signs the report before anyone relies on it."

@@ -21,7 +21,7 @@ func (m *chart) northArrow(c pt) {
 	m.text("N", at(18.5, 0), face{size: 8, bold: true}, middle)
 	if math.Abs(bearing) > 1e-9 {
 		m.text(fmt.Sprintf("y axis bears %s° true", length(bearing*180/math.Pi)),
-			pt{c[0] + 28, c[1] - 26}, face{size: 7}, middleLeft)
+			pt{c[0] + 28, c[1] - 18}, face{size: 7}, middleLeft)
 	}
 }
 
