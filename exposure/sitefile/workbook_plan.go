@@ -1,0 +1,277 @@
+package sitefile
+
+import (
+	"cmp"
+	"fmt"
+	"io"
+	"slices"
+	"strings"
+
+	"example.org/standclear/exposure/units"
+)
+
+// roomRows is how many rows below the last one get drop-downs and checks. More
+// may be filled in: the reader checks every row all the same.
+const roomRows = 2000
+
+// writeFillIn writes the workbook to be filled in: one sheet a table.
+func writeFillIn(w io.Writer) error {
+	plans := []sheetPlan{guidePlan()}
+	for _, t := range Schema() {
+		plans = append(plans, fillInPlan(t))
+	}
+	return writeWorkbook(w, plans)
+}
+
+// writeGrids writes tables that were read from CSV files as one workbook, which
+// can be filled in further.
+func writeGrids(w io.Writer, grids []*grid) error {
+	plans := []sheetPlan{guidePlan()}
+	for _, g := range grids {
+		t := tableSchema(g.table)
+		if t == nil {
+			return fmt.Errorf("sitefile: no table is named %q", g.table)
+		}
+		plans = append(plans, gridPlan(*t, g))
+		if g.table == limitsTable.Name && !slices.ContainsFunc(grids, func(o *grid) bool { return strings.HasPrefix(o.table, "limits ") }) {
+			plans = append(plans, limitsPlans(g)...)
+		}
+	}
+	return writeWorkbook(w, plans)
+}
+
+func fillInPlan(t TableSchema) sheetPlan {
+	p := sheetPlan{name: t.Name, guide: guideLine(t), fillIn: true, room: roomRows}
+	columns := slices.Clone(t.Columns)
+	if t.Vertical {
+		p.columns = verticalColumns()
+		p.room = 0
+		for _, c := range columns {
+			p.labels = append(p.labels, planColumn(c))
+			p.rows = append(p.rows, rowPlan{cells: []string{c.Header(), ""}})
+		}
+		return p
+	}
+	slices.SortStableFunc(columns, func(a, b ColumnSchema) int { return cmp.Compare(rank(a), rank(b)) })
+	ex := rowPlan{grey: true}
+	for i, c := range columns {
+		p.columns = append(p.columns, planColumn(c))
+		text := c.Example
+		if i == 0 {
+			text = "# example " + text
+		}
+		ex.cells = append(ex.cells, text)
+	}
+	p.rows = []rowPlan{ex}
+	return p
+}
+
+// rank puts the rare columns behind the others.
+func rank(c ColumnSchema) int {
+	if c.Rare {
+		return 1
+	}
+	return 0
+}
+
+// gridPlan lays out a table as read, its comments in grey between the rows.
+func gridPlan(t TableSchema, g *grid) sheetPlan {
+	p := sheetPlan{name: t.Name, guide: guideLine(t), fillIn: true, room: roomRows}
+	if len(g.rows) == 0 {
+		return fillInPlan(t)
+	}
+	if t.Vertical {
+		p.columns, p.room = verticalColumns(), 0
+	}
+	for i, h := range g.rows[0].cells {
+		if t.Vertical && i < 2 {
+			continue
+		}
+		p.columns = append(p.columns, headerPlan(t, h))
+	}
+	for _, r := range g.rows[1:] {
+		p.rows = append(p.rows, rowPlan{cells: plainDecimals(p, g, r.cells)})
+		if t.Vertical {
+			p.labels = append(p.labels, headerPlan(t, r.cell(0)))
+		}
+	}
+	if t.Name != limitsTable.Name && !t.Vertical {
+		p.rows = slices.Concat(commentRows(g), p.rows)
+	}
+	return p
+}
+
+func commentRows(g *grid) []rowPlan {
+	var out []rowPlan
+	for _, r := range g.comments {
+		out = append(out, rowPlan{cells: r.cells, grey: true})
+	}
+	return out
+}
+
+// plainDecimals writes numbers with a decimal point where the table had a comma.
+func plainDecimals(p sheetPlan, g *grid, cells []string) []string {
+	if !g.decimalComma {
+		return cells
+	}
+	cells = slices.Clone(cells)
+	for i, text := range cells {
+		if i < len(p.columns) && p.columns[i].kind == numberCell {
+			if _, err := units.ParseNumber(text, true); err == nil {
+				cells[i] = strings.Replace(text, ",", ".", 1)
+			}
+		}
+	}
+	return cells
+}
+
+// limitsPlans turns the leading rows of a limit table into its two sheets.
+func limitsPlans(g *grid) []sheetPlan {
+	about, spots := fillInPlan(limitsAboutTable), fillInPlan(limitsSpotsTable)
+	spots.rows = nil
+	for _, r := range g.comments {
+		key, rest, ok := strings.Cut(strings.TrimPrefix(r.cell(0), "#"), ":")
+		key, rest = strings.ToLower(strings.TrimSpace(key)), strings.TrimSpace(rest)
+		if !ok {
+			continue
+		}
+		if key == "spot" {
+			spots.rows = append(spots.rows, rowPlan{cells: append([]string{rest}, r.cells[1:]...)})
+			continue
+		}
+		for i := range about.rows {
+			if about.rows[i].cells[0] == key {
+				about.rows[i].cells[1] = strings.Join(append([]string{rest}, r.cells[1:]...), ", ")
+			}
+		}
+	}
+	return []sheetPlan{about, spots}
+}
+
+// headerPlan finds the column that a header names; one that the schema does not
+// know is text. The range holds only in the schema's own unit.
+func headerPlan(t TableSchema, header string) columnPlan {
+	name, unit, _ := strings.Cut(header, "[")
+	unit = strings.TrimSuffix(strings.TrimSpace(unit), "]")
+	c, ok := t.Column(strings.ToLower(strings.TrimSpace(name)))
+	if !ok {
+		for _, one := range t.Columns {
+			if strings.EqualFold(one.Name, strings.TrimSpace(name)) {
+				c, ok = one, true
+			}
+		}
+	}
+	if !ok {
+		return columnPlan{header: header, width: 24}
+	}
+	p := planColumn(c)
+	p.header = header
+	if unit != "" && unit != c.Unit {
+		p.limits, p.rule = nil, ""
+	}
+	return p
+}
+
+func verticalColumns() []columnPlan {
+	return []columnPlan{
+		{header: "item", note: "Given by the program: leave it as it is.", required: true, width: 26},
+		{header: "value", note: "Fill in; a blank value takes the default that the item's note names.", required: true, width: 48},
+	}
+}
+
+// planColumn turns a column of the schema into what the sheet shows and checks.
+func planColumn(c ColumnSchema) columnPlan {
+	p := columnPlan{header: c.Header(), note: noteOf(c), choices: c.Choices, words: c.Words,
+		limits: c.Range, rule: c.Rule, required: c.Required && c.Unless == ""}
+	switch c.Kind {
+	case Number:
+		p.kind, p.width = numberCell, 12
+	case Date:
+		p.kind, p.width = dateCell, 12
+	case Symbol:
+		p.choices, p.open, p.width = unitsOf(c), true, 11
+	case Choice:
+		p.width = 13
+	default:
+		p.width = 18
+	}
+	if c.Name == "pattern" {
+		p.choices, p.open = builtinPatterns, true
+	}
+	if from, ok := suggestions[c.Name]; ok && c.Kind == Text {
+		p.listFrom, p.open = from, true
+	}
+	for word := range strings.FieldsSeq(p.header) {
+		p.width = max(p.width, float64(len(word))*1.15+2)
+	}
+	switch c.Name {
+	case "outline", "source", "note", "help":
+		p.width = 44
+	}
+	return p
+}
+
+// suggestions are columns that name a row of another table.
+var suggestions = map[string]string{
+	"on":         "surfaces!$A$4:$A$503",
+	"place":      "places!$A$4:$A$2003",
+	"instrument": "instruments!$A$4:$A$503",
+}
+
+// unitsOf lists common units that a unit cell may hold.
+func unitsOf(c ColumnSchema) []string {
+	if c.Dimension == units.Frequency {
+		return []string{"Hz", "kHz", "MHz", "GHz"}
+	}
+	return []string{"V/m", "A/m", "uT", "W/m2", "mW/cm2"}
+}
+
+// noteOf writes the help of a column.
+func noteOf(c ColumnSchema) string {
+	lines := []string{strings.ToUpper(c.Help[:1]) + c.Help[1:] + "."}
+	switch {
+	case c.Required && c.Unless != "":
+		lines = append(lines, "Required, unless there is "+c.Unless+".")
+	case c.Required:
+		lines = append(lines, "Required.")
+	case c.Default != "":
+		lines = append(lines, "Blank: "+c.Default+".")
+	}
+	if len(c.Choices) > 0 {
+		lines = append(lines, "One of: "+strings.Join(c.Choices, ", ")+".")
+	}
+	if c.Rule != "" {
+		lines = append(lines, strings.ToUpper(c.Rule[:1])+c.Rule[1:]+".")
+	}
+	if len(c.Words) > 0 {
+		lines = append(lines, "Or the word "+strings.Join(c.Words, ", ")+".")
+	}
+	if c.Unit != "" && !c.UnitOptional {
+		lines = append(lines, "In "+c.Unit+"; any other unit of its kind is read where the header says so.")
+	}
+	return strings.Join(lines, "\n")
+}
+
+// guideLine is the grey line above a header. It has no colon, which would make it
+// a heading of the limit table.
+func guideLine(t TableSchema) string {
+	help, _, _ := strings.Cut(t.Help, ";")
+	return strings.ReplaceAll(help, ":", ",") + ". Dark headers must be filled. Rows that begin with # are not read. Help at each header"
+}
+
+// guidePlan is the first sheet, which says how the others are used.
+func guidePlan() sheetPlan {
+	p := sheetPlan{name: sheetGuide, columns: []columnPlan{{header: "How to fill in this workbook", width: 24}, {width: 72}}}
+	add := func(left, right string) { p.rows = append(p.rows, rowPlan{cells: []string{left, right}}) }
+	add("Sheets", "One sheet is one table. Leave a table that you do not need as it is; site, antennas and limits are the least there must be.")
+	add("Headers", "A header is a name and, in brackets, the unit of the figures under it. Dark headers must be filled, light ones have a default. Point at a header to read its note.")
+	add("Other units", "Unprotect the sheet (there is no password), write another unit into the brackets, such as power [dBm] or z [ft], and type the figures in that unit.")
+	add("Rows", "A row that begins with # is not read: so is the grey example. Hidden and filtered rows are read. Do not merge cells.")
+	add("Figures", "Type figures without their unit. Do not format a cell as a percentage or as a date unless the header asks for it. A formula may stand for a figure; save in a spreadsheet program so that its value is stored.")
+	add("Own remarks", "A column named note, or whose name begins with note, is kept and printed and never interpreted.")
+	add("Saving", "Save as .xlsx, without a password and without macros.")
+	for _, t := range Schema() {
+		add(t.Name, t.Help+".")
+	}
+	return p
+}

@@ -1,0 +1,274 @@
+package sitefile
+
+import (
+	"fmt"
+	"io"
+	"regexp"
+	"strings"
+	"time"
+	"unicode/utf8"
+
+	"example.org/standclear/exposure/units"
+	"github.com/xuri/excelize/v2"
+)
+
+// sheetPlan is one sheet to be written: a table with its header, the rows in it
+// and what the user may type under each column.
+type sheetPlan struct {
+	name    string
+	guide   string // the grey line above the header
+	columns []columnPlan
+	rows    []rowPlan
+	// fillIn sheets get drop-downs, checks and protection for room rows below the
+	// last one.
+	fillIn bool
+	room   int
+	// labels says that the first column is written by the program too (the items
+	// of the site table): it is locked, and checks go by row.
+	labels []columnPlan
+}
+
+// columnPlan is one column, or one item of the site table.
+type columnPlan struct {
+	header   string // power [W]
+	note     string // shown at the header
+	kind     cellKind
+	choices  []string
+	listFrom string   // a range of another sheet that is suggested
+	open     bool     // choices are suggestions
+	words    []string // allowed beside a number
+	limits   *Range   // of the number, in the unit of the header
+	rule     string   // the same in words
+	required bool
+	width    float64
+}
+
+type rowPlan struct {
+	cells []string
+	grey  bool // a comment or an example, which is not read
+}
+
+// cellKind is how a cell is written.
+type cellKind int
+
+const (
+	textCell   cellKind = iota // always text: 007 stays 007
+	numberCell                 // a number where it is one to the digit, else text
+	dateCell                   // a date where it is an ISO date, else text
+)
+
+// writeWorkbook writes sheets as one workbook, with the same bytes for the same
+// sheets. Text is never a formula, whatever it begins with.
+func writeWorkbook(w io.Writer, plans []sheetPlan) error {
+	f := excelize.NewFile()
+	defer f.Close()
+	b := &workbookBuilder{book: f}
+	b.styles()
+	for _, p := range plans {
+		b.sheet(p)
+	}
+	b.writeChoices()
+	b.do(f.DeleteSheet("Sheet1"))
+	b.do(f.SetDocProps(&excelize.DocProperties{Creator: "standclear", LastModifiedBy: "standclear",
+		Created: "2000-01-01T00:00:00Z", Modified: "2000-01-01T00:00:00Z"}))
+	f.SetActiveSheet(0)
+	if b.err != nil {
+		return fmt.Errorf("sitefile: write workbook: %w", b.err)
+	}
+	return packWorkbook(w, f)
+}
+
+type workbookBuilder struct {
+	book    *excelize.File
+	err     error
+	style   map[string]int
+	choices []choiceList
+}
+
+// do keeps the first error.
+func (b *workbookBuilder) do(err error) {
+	if b.err == nil {
+		b.err = err
+	}
+}
+
+// styles defines the look of a cell by its role.
+func (b *workbookBuilder) styles() {
+	b.style = map[string]int{}
+	border := []excelize.Border{{Type: "bottom", Color: "8C8C8C", Style: 1}, {Type: "right", Color: "C8C8C8", Style: 1}}
+	head := func(bold bool, fill string) *excelize.Style {
+		return &excelize.Style{Font: &excelize.Font{Bold: bold, Family: "Arial", Size: 10}, Border: border,
+			Fill:       excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{fill}},
+			Alignment:  &excelize.Alignment{WrapText: true, Vertical: "top"},
+			Protection: &excelize.Protection{Locked: true}}
+	}
+	body := func(format string, horizontal string) *excelize.Style {
+		s := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10},
+			Alignment: &excelize.Alignment{Vertical: "top", Horizontal: horizontal}, Protection: &excelize.Protection{Locked: false}}
+		if format != "" {
+			s.CustomNumFmt = &format
+		}
+		return s
+	}
+	grey := func(italic bool) *excelize.Style {
+		return &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10, Color: "7A7A7A", Italic: italic},
+			Alignment: &excelize.Alignment{Vertical: "top"}, Protection: &excelize.Protection{Locked: false}}
+	}
+	title := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 14, Bold: true}, Protection: &excelize.Protection{Locked: true}}
+	prose := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10}, Protection: &excelize.Protection{Locked: true},
+		Alignment: &excelize.Alignment{WrapText: true, Vertical: "top"}}
+	// In a fixed order: the numbers of the styles stand in the file.
+	for _, one := range []struct {
+		name  string
+		style *excelize.Style
+	}{
+		{"required", head(true, "D2D2D2")}, {"optional", head(false, "EFEFEF")},
+		{"text", body("@", "left")}, {"number", body("", "right")}, {"date", body("yyyy-mm-dd", "left")},
+		{"example", grey(true)}, {"title", title}, {"prose", prose},
+	} {
+		id, err := b.book.NewStyle(one.style)
+		b.do(err)
+		b.style[one.name] = id
+	}
+}
+
+func (k cellKind) style() string { return [...]string{"text", "number", "date"}[k] }
+
+// sheet writes one table.
+func (b *workbookBuilder) sheet(p sheetPlan) {
+	_, err := b.book.NewSheet(p.name)
+	b.do(err)
+	row := 1
+	for i, c := range p.columns {
+		letters := columnLetters(i + 1)
+		b.do(b.book.SetColStyle(p.name, letters, b.style[c.kind.style()]))
+		b.do(b.book.SetColWidth(p.name, letters, letters, c.width))
+	}
+	if last := len(p.columns); last < 256 {
+		b.do(b.book.SetColStyle(p.name, columnLetters(last+1)+":"+columnLetters(256), b.style["text"]))
+	}
+	if p.guide != "" {
+		for i := range p.columns {
+			b.do(b.book.SetCellStyle(p.name, cellName(i+1, row), cellName(i+1, row), b.style["example"]))
+		}
+		b.text(p.name, 1, row, "# "+p.guide)
+		row++
+	}
+	header := row
+	for i, c := range p.columns {
+		b.text(p.name, i+1, row, c.header)
+		look := "optional"
+		if c.required {
+			look = "required"
+		}
+		b.do(b.book.SetCellStyle(p.name, cellName(i+1, row), cellName(i+1, row), b.style[look]))
+		b.note(p.name, cellName(i+1, row), c.note)
+	}
+	b.do(b.book.SetRowHeight(p.name, row, 40))
+	for _, r := range p.rows {
+		row++
+		for i, text := range r.cells {
+			kind := textCell
+			if i < len(p.columns) {
+				kind = p.columns[i].kind
+			}
+			if n := row - header - 1; i == 1 && n < len(p.labels) {
+				kind = p.labels[n].kind
+			}
+			b.value(p.name, i+1, row, text, kind, r.grey)
+		}
+	}
+	if p.fillIn {
+		b.checks(p, header+1, max(row, header)+p.room)
+		b.labels(p, header)
+		b.protect(p.name)
+	}
+	b.layout(p, header)
+}
+
+// labels locks and notes the first column of a table whose rows are given.
+func (b *workbookBuilder) labels(p sheetPlan, header int) {
+	for i, item := range p.labels {
+		row := header + 1 + i
+		look := "optional"
+		if item.required {
+			look = "required"
+		}
+		b.do(b.book.SetCellStyle(p.name, cellName(1, row), cellName(1, row), b.style[look]))
+		b.do(b.book.SetCellStyle(p.name, cellName(2, row), cellName(2, row), b.style[item.kind.style()]))
+		b.note(p.name, cellName(1, row), item.note)
+		b.check(p.name, item, cellName(2, row), cellName(2, row))
+	}
+}
+
+// value writes one cell of a row.
+func (b *workbookBuilder) value(sheet string, column, row int, text string, kind cellKind, grey bool) {
+	cell := cellName(column, row)
+	look := kind.style()
+	if grey {
+		look = "example"
+	}
+	b.do(b.book.SetCellStyle(sheet, cell, cell, b.style[look]))
+	switch {
+	case text == "":
+	case kind == numberCell && isTypedNumber(text) && !grey:
+		// SetCellDefault keeps all digits; the calls for numbers cut them at 15.
+		b.do(b.book.SetCellDefault(sheet, cell, text))
+	case kind == dateCell && isTypedDate(text) && !grey:
+		day, _ := time.Parse(time.DateOnly, text)
+		b.do(b.book.SetCellInt(sheet, cell, int64(day.Sub(dayZero)/(24*time.Hour))))
+	default:
+		b.text(sheet, column, row, text)
+	}
+}
+
+// dayZero is the day from which a workbook counts, for days from March 1900 on.
+var dayZero = time.Date(1899, 12, 30, 0, 0, 0, 0, time.UTC)
+
+// isTypedNumber says whether the reader gives back the very text of a number.
+func isTypedNumber(text string) bool {
+	v, err := units.ParseNumber(text, false)
+	return err == nil && numberText(v) == text
+}
+
+func isTypedDate(text string) bool {
+	day, err := time.Parse(time.DateOnly, text)
+	return err == nil && day.Year() > 1900 && day.Year() < 10000
+}
+
+// escapeMark is what a workbook reads as one character by its number.
+var escapeMark = regexp.MustCompile(`_(x[0-9A-Fa-f]{4}_)`)
+
+// text writes a text that stays text: a leading = is no formula.
+func (b *workbookBuilder) text(sheet string, column, row int, text string) {
+	place := sheet + "!" + cellName(column, row)
+	if utf8.RuneCountInString(text) > 32767 {
+		b.do(fmt.Errorf("%s: %d characters, and a cell holds 32767", place, utf8.RuneCountInString(text)))
+		return
+	}
+	for _, r := range text {
+		if r < ' ' && r != '\n' && r != '\t' || r == 0xFFFE || r == 0xFFFF {
+			b.do(fmt.Errorf("%s: a cell cannot hold the control character %U", place, r))
+			return
+		}
+	}
+	if !utf8.ValidString(text) {
+		b.do(fmt.Errorf("%s: the text is not UTF-8", place))
+		return
+	}
+	// A mark may begin with the end of the one before it, so go on until none is left.
+	b.do(b.book.SetCellStr(sheet, cellName(column, row), escapeMark.ReplaceAllString(text, "_x005F_$1")))
+}
+
+// note shows help at a header.
+func (b *workbookBuilder) note(sheet, cell, text string) {
+	if text == "" {
+		return
+	}
+	lines := 1
+	for _, l := range strings.Split(text, "\n") {
+		lines += 1 + utf8.RuneCountInString(l)/42
+	}
+	b.do(b.book.AddComment(sheet, excelize.Comment{Cell: cell, Author: "standclear", Width: 300, Height: uint(18 * lines),
+		Paragraph: []excelize.RichTextRun{{Text: text, Font: &excelize.Font{Family: "Arial", Size: 9}}}}))
+}
