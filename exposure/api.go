@@ -1,7 +1,5 @@
 package exposure
 
-import "context"
-
 // Options of a model, set once.
 type Options struct {
 	// Workers is the number of goroutines a long question may use; 0 = one for
@@ -36,11 +34,8 @@ type ZoneQuery struct {
 	Section                   *Section // a vertical section instead of surfaces
 }
 
-// API is what a Model answers; it is written out here so that one page shows it.
-type API interface {
-	Sources() []SourceInfo
-	Field(ctx context.Context, places []Place) ([]PointResult, error)
-	Distances(ctx context.Context, q DistanceQuery) ([]Distance, error)
-	Zones(ctx context.Context, q ZoneQuery) ([]Zone, error)
-	Assess(ctx context.Context, q ZoneQuery) (*Assessment, error)
+// AssessOptions are the choices of an assessment.
+type AssessOptions struct {
+	Program     string  // name and version, printed in every output
+	ResolutionM float64 // of the boundaries, 0 = 0.05
 }

@@ -1,11 +1,19 @@
 package exposure
 
-import "example.org/standclear/antenna"
+import (
+	"example.org/standclear/antenna"
+	"example.org/standclear/limits"
+)
 
-// Methods lists every method that a result can rest on: those of package
-// antenna, then those of this package.
+// Methods lists every method that a prediction can rest on: those of package
+// antenna, of package limits, then those of this package.
 func Methods() []antenna.MethodNote {
-	return append(antenna.Methods(), methodNotes...)
+	list := antenna.Methods()
+	for _, m := range limits.Methods() {
+		list = append(list, antenna.MethodNote(m))
+	}
+	list = append(list, methodNotes...)
+	return append(list, geodeticNotes...)
 }
 
 var methodNotes = []antenna.MethodNote{

@@ -52,7 +52,10 @@ type PointResult struct {
 	SWPerM2       Number         `json:"s_w_per_m2"`      // sum over sources of the larger of E2/Z0 and Z0 H2
 	Ratios        []ClassRatio   `json:"ratios"`
 	Contributions []Contribution `json:"contributions"`
-	Place         *Place         `json:"-"`
+	// Unlisted counts the contributions left out of the list of a very large
+	// site, each below 0.001 for every class; they are in every sum.
+	Unlisted int    `json:"contributions_not_listed,omitempty"`
+	Place    *Place `json:"-"`
 }
 
 // ClassRatio is the exposure ratio of one class at one place.
