@@ -11,6 +11,7 @@ type Label struct {
 	Box    Box
 	Anchor [2]float64 // what it names
 	Leader bool       // a line leads from the anchor to the label
+	face   face
 }
 
 // tag is a label that is to be placed.
@@ -163,7 +164,7 @@ func place(area Box, tags []tag, c *clutter) (placed []Label, without []string) 
 	}
 	for i, t := range tags {
 		if s := chosen[i]; s != nil {
-			placed = append(placed, Label{t.text, s.box, s.anchor, s.leader})
+			placed = append(placed, Label{t.text, s.box, s.anchor, s.leader, t.face})
 		} else {
 			without = append(without, t.text)
 		}
@@ -228,18 +229,14 @@ func meets(a, b pt, box Box) bool {
 }
 
 // labels draws placed labels on white, with their leader lines.
-func (s *sheet) labels(ls []Label, faces map[string]face) {
+func (s *sheet) labels(ls []Label) {
 	for _, l := range ls {
 		if l.Leader {
 			s.line([]pt{l.Anchor, l.Box.nearest(l.Anchor)}, leaderStroke)
 		}
 	}
 	for _, l := range ls {
-		f, ok := faces[l.Text]
-		if !ok {
-			f = labelFace
-		}
 		s.fill([][]pt{l.Box.grow(-0.4).ring()}, 255)
-		s.text(l.Text, l.Box.centre(), f, middle)
+		s.text(l.Text, l.Box.centre(), l.face, middle)
 	}
 }

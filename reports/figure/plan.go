@@ -372,13 +372,7 @@ func round(s *exposure.Source) bool {
 
 func (m *chart) writeLabels() {
 	placed, lost := place(m.Box.grow(-2), m.tags, m.clutter)
-	faces := map[string]face{}
-	for _, t := range m.tags {
-		if _, ok := faces[t.text]; !ok {
-			faces[t.text] = t.face
-		}
-	}
-	m.page.sheet.labels(placed, faces)
+	m.page.sheet.labels(placed)
 	m.page.labels = append(m.page.labels, placed...)
 	m.page.lost = append(m.page.lost, lost...)
 }

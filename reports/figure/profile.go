@@ -110,11 +110,12 @@ func Profile(d ProfileData) (f *Figure, err error) {
 		q := a.at(pt{m.DistanceM, 1})
 		p.circle(q, 2.6, true, 255, stroke{width: 0.9})
 		c.box(Box{q[0] - 3, q[1] - 3, q[0] + 3, q[1] + 3}, 2)
-		tags = append(tags, tag{text: length(m.DistanceM) + " m, " + shorten(m.Class, 28), anchor: q, face: labelFace, gap: 4, toward: math.Pi / 4})
+		// Rounded up: a keep-out distance is never printed shorter than it is.
+		tags = append(tags, tag{text: length(math.Ceil(m.DistanceM*100-1e-6)/100) + " m, " + shorten(m.Class, 28), anchor: q, face: labelFace, gap: 4, toward: math.Pi / 4})
 	}
 	a.frame(p.sheet)
 	placed, lost := place(b.grow(-2), tags, c)
-	p.sheet.labels(placed, nil)
+	p.sheet.labels(placed)
 	p.labels, p.lost = append(p.labels, placed...), append(p.lost, lost...)
 	p.under(b.Y0-axisBeneath-4, entries)
 	return p.foot(title, cautionOr(d.Caution)), nil
