@@ -159,31 +159,28 @@ type Field struct{ E, H, B, S float64 }
 //	thermal:     the largest of (E/E_L)^2, (H/H_L)^2, (B/B_L)^2 and S/S_L
 //	stimulation: the largest of E/E_L, H/H_L and B/B_L
 //
-// or their sum where a row that holds says that they add. Quantities without a
-// level do not count; with none the ratio is 0. The largest of quantities that
-// one plane wave ties together is not an estimate; near a source it is the
-// published rule for levels that must each be met.
+// or, where a row that holds says that they add, the sum of the terms of E, of
+// the magnetic field (the larger of those of H and B, which are one field) and
+// of S. Quantities without a level do not count; with none the ratio is 0. It
+// errs on the high side: every level has to be met, whichever would suffice.
 // Source: [LIM-SUM].
 func (a At) Ratio(f Field) float64 {
-	thermal := a.Group.Effect != Stimulation
-	var r float64
-	join := func(x, level float64, squared bool) {
-		if !(level > 0) {
-			return
-		}
-		q := x / level
-		if squared {
-			q *= q
-		}
-		if a.Combine == CombineAdd {
-			r += q
-		} else {
-			r = max(r, q)
-		}
+	e, h, b := share(f.E, a.E), share(f.H, a.H), share(f.B, a.B)
+	s := share(f.S, a.S)
+	if a.Group.Effect == Stimulation {
+		s = 0
+	} else {
+		e, h, b = e*e, h*h, b*b
 	}
-	join(f.E, a.E, thermal)
-	join(f.H, a.H, thermal)
-	join(f.B, a.B, thermal)
-	join(f.S, a.S, false)
-	return r
+	if a.Combine == CombineAdd {
+		return e + max(h, b) + s
+	}
+	return max(e, h, b, s)
+}
+
+func share(x, level float64) float64 {
+	if !(level > 0) {
+		return 0
+	}
+	return x / level
 }
