@@ -2,9 +2,6 @@ package figure
 
 import (
 	"math"
-	"testing"
-
-	"github.com/stretchr/testify/require"
 
 	"example.org/standclear/limits"
 )
@@ -89,22 +86,4 @@ func sampleScatter() ScatterData {
 		d.Points = append(d.Points, q)
 	}
 	return d
-}
-
-func TestDiagramsOfTheSample(t *testing.T) {
-	f, err := Levels(sampleLevels())
-	require.NoError(t, err)
-	show(t, "levels", f)
-	f, err = Pattern(samplePattern(true))
-	require.NoError(t, err)
-	show(t, "pattern-polar", f)
-	f, err = Pattern(samplePattern(false))
-	require.NoError(t, err)
-	show(t, "pattern", f)
-	f, err = Series(sampleSeries())
-	require.NoError(t, err)
-	show(t, "series", f)
-	f, err = Scatter(sampleScatter())
-	require.NoError(t, err)
-	show(t, "scatter", f)
 }

@@ -70,13 +70,17 @@ func Pattern(d PatternData) (f *Figure, err error) {
 	}
 	title := "Antenna pattern: " + d.Name
 	p := newPage()
-	p.heading(title, fmt.Sprintf("Peak gain %s dBi; loss below it in dB.", minus(fmt.Sprintf("%.2f", d.GainDBi))), d.Note)
+	p.heading(title, fmt.Sprintf("Peak gain %s dBi; loss below it in dB.", length(d.GainDBi)), d.Note)
 	if d.Polar {
 		p.polar(d)
 	} else {
 		p.rectangular(d)
 	}
-	return p.foot(title, fmt.Sprintf("Losses beyond %s dB are drawn at the floor.", length(d.FloorDB))), nil
+	how := ""
+	if d.Polar {
+		how = "Horizontal cut seen from above, boresight upward, angles clockwise; vertical cut seen from the antenna's right, boresight to the right, angles upward."
+	}
+	return p.foot(title, how, fmt.Sprintf("Losses beyond %s dB are drawn at the floor.", length(d.FloorDB))), nil
 }
 
 // floored returns the losses cut off at the floor; a missing loss stays missing.
@@ -156,6 +160,17 @@ func (p *page) polar(d PatternData) {
 		for loss := step; loss < d.FloorDB; loss += step {
 			p.circle(centre, r*(1-loss/d.FloorDB), false, 0, gridStroke)
 		}
+		// Figures on a ray between two labelled ones, beneath the curve.
+		for loss := step; loss < d.FloorDB; loss += step {
+			q := at(-75, loss)
+			if vertical {
+				q = at(105, loss)
+			}
+			t := length(-loss)
+			w := tickFace.width(t)/2 + 1
+			p.fill([][]pt{Box{q[0] - w, q[1] - 4, q[0] + w, q[1] + 4}.ring()}, 255)
+			p.text(t, q, tickFace, middle)
+		}
 		var l []pt
 		for k, loss := range floored(c, d.FloorDB) {
 			q := at(c.AngleDeg[k], loss)
@@ -166,20 +181,6 @@ func (p *page) polar(d PatternData) {
 		}
 		p.line(l, stroke{width: 1.1})
 		p.circle(centre, r, false, 0, frameStroke)
-		// Figures on a ray between two labelled ones, above the line.
-		for loss := 0.0; loss < d.FloorDB; loss += step {
-			q := at(-75, loss)
-			if vertical {
-				q = at(105, loss)
-			}
-			t := length(-loss)
-			if loss == 0 {
-				continue
-			}
-			w := tickFace.width(t)/2 + 1
-			p.fill([][]pt{Box{q[0] - w, q[1] - 4, q[0] + w, q[1] + 4}.ring()}, 255)
-			p.text(t, q, tickFace, middle)
-		}
 	}
 	p.y -= 2*r + 62
 }

@@ -97,6 +97,7 @@ func (c *clutter) under(b Box) float64 {
 type seat struct {
 	box    Box
 	anchor pt
+	end    pt // of the leader line, on the box
 	leader bool
 	cost   float64
 }
@@ -111,7 +112,7 @@ func (t tag) seatsOf(area Box, c *clutter) []seat {
 	add := func(m, anchor pt, leader bool, cost float64) {
 		b := Box{m[0] - w/2, m[1] - h/2, m[0] + w/2, m[1] + h/2}
 		if b.Inside(area) {
-			out = append(out, seat{b, anchor, leader, cost + c.under(b)})
+			out = append(out, seat{b, anchor, b.nearest(anchor), leader, cost + c.under(b)})
 		}
 	}
 	for i, m := range t.seats {
@@ -172,6 +173,14 @@ func place(area Box, tags []tag, c *clutter) (placed []Label, without []string) 
 	return placed, without
 }
 
+// What it costs a label, in the unit of seat.cost, to be crossed by a leader
+// line, to cross another's leader line, and to cover another's anchor.
+const (
+	costStruck  = 25
+	costCrossed = 15
+	costCover   = 20
+)
+
 // pick returns the cheapest seat that overlaps no label already seated.
 func pick(self int, seats []seat, chosen []*seat) *seat {
 	var best *seat
@@ -180,52 +189,52 @@ next:
 	for k := range seats {
 		s := &seats[k]
 		if s.cost >= bestCost {
-			break
+			break // seats come in the order of their cost
+		}
+		for i, o := range chosen {
+			if i != self && o != nil && s.box.Overlaps(o.box) {
+				continue next
+			}
 		}
 		cost := s.cost
-		end := s.box.nearest(s.anchor)
 		for i, o := range chosen {
 			if i == self || o == nil {
 				continue
 			}
-			if s.box.Overlaps(o.box) {
-				continue next
+			if s.leader && strikes(s.anchor, s.end, o.box) {
+				cost += costStruck
 			}
-			oEnd := o.box.nearest(o.anchor)
-			if s.leader && meets(s.anchor, end, o.box) {
-				cost += 25
-			}
-			if o.leader && meets(o.anchor, oEnd, s.box) {
-				cost += 25
+			if o.leader && strikes(o.anchor, o.end, s.box) {
+				cost += costStruck
 			}
 			if s.leader && o.leader && s.anchor != o.anchor {
-				if _, cross := crossing(s.anchor, end, o.anchor, oEnd); cross {
-					cost += 15
+				if _, cross := crossing(s.anchor, s.end, o.anchor, o.end); cross {
+					cost += costCrossed
 				}
 			}
 			if s.box.contains(o.anchor) {
-				cost += 20
+				cost += costCover
+			}
+			if cost >= bestCost {
+				continue next
 			}
 		}
-		if cost < bestCost {
-			best, bestCost = s, cost
-		}
+		best, bestCost = s, cost
 	}
 	return best
 }
 
-// meets reports whether the segment from a to b passes through the box.
-func meets(a, b pt, box Box) bool {
-	if box.contains(a) || box.contains(b) {
-		return true
+// strikes reports whether the segment from a to b passes through the box.
+func strikes(a, b pt, box Box) bool {
+	if math.Max(a[0], b[0]) < box.X0 || math.Min(a[0], b[0]) > box.X1 ||
+		math.Max(a[1], b[1]) < box.Y0 || math.Min(a[1], b[1]) > box.Y1 {
+		return false
 	}
-	r := box.ring()
-	for i := 0; i < 4; i++ {
-		if _, ok := crossing(a, b, r[i], r[i+1]); ok {
-			return true
-		}
-	}
-	return false
+	// The segment's bounds meet the box: it passes by only if all four corners
+	// lie on one side of its line.
+	side := func(x, y float64) bool { return (b[0]-a[0])*(y-a[1])-(b[1]-a[1])*(x-a[0]) > 0 }
+	first := side(box.X0, box.Y0)
+	return side(box.X1, box.Y0) != first || side(box.X1, box.Y1) != first || side(box.X0, box.Y1) != first
 }
 
 // labels draws placed labels on white, with their leader lines.

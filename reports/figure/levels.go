@@ -96,8 +96,8 @@ func Levels(d LevelsData) (f *Figure, err error) {
 		if name == "" {
 			name = string(g.quantity)
 		}
-		a.draw(p.sheet, logTicks(a.X0, a.X1, int(b.W()/52), frequency), logTicks(a.Y0, a.Y1, 8, plainOrPower),
-			"frequency", fmt.Sprintf("%s %s [%s]", name, g.quantity, g.unit), true)
+		a.draw(p.sheet, logTicks(a.X0, a.X1, int(b.W()/24), shortHz), logTicks(a.Y0, a.Y1, 8, plainOrPower),
+			"frequency [Hz]", fmt.Sprintf("%s %s [%s]", name, g.quantity, g.unit), true)
 		for _, l := range g.lines {
 			a.trace(p.sheet, []curve{{x: l.Hz, y: l.Level, style: style[l.Label]}})
 		}
@@ -108,6 +108,13 @@ func Levels(d LevelsData) (f *Figure, err error) {
 	for _, l := range labels {
 		entries = append(entries, entry{lineSample(style[l]), l})
 	}
-	p.under(p.y, entries)
+	if n := len(groups); n > 1 && n%2 == 1 {
+		// The legend takes the place of the panel that is not there.
+		last := p.panels[n-1].Box
+		used := p.legend("", entries, pt{last.X1 + 40, last.Y1}, pageWidth-pageMargin-12-last.X1-40, 1)
+		p.y = math.Min(p.y, last.Y1-used-6)
+	} else {
+		p.under(p.y, entries)
+	}
 	return p.foot(d.Title, d.Caution), nil
 }

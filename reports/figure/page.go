@@ -36,12 +36,17 @@ func (p *page) heading(title string, lines ...string) {
 // foot writes notes and the caution, cuts the page to its height and closes the
 // figure.
 func (p *page) foot(title string, notes ...string) *Figure {
-	p.line([]pt{{pageMargin, p.y}, {pageWidth - pageMargin, p.y}}, stroke{width: 0.4, grey: 120})
-	p.y -= 3
+	ruled := false
 	for _, n := range notes {
-		if n != "" {
-			p.y -= p.paragraph(n, pt{pageMargin, p.y}, pageWidth-2*pageMargin, footFace)
+		if n == "" {
+			continue
 		}
+		if !ruled {
+			p.line([]pt{{pageMargin, p.y}, {pageWidth - pageMargin, p.y}}, stroke{width: 0.4, grey: 120})
+			p.y -= 3
+			ruled = true
+		}
+		p.y -= p.paragraph(n, pt{pageMargin, p.y}, pageWidth-2*pageMargin, footFace)
 	}
 	h := math.Ceil(pageMargin/2 - p.y)
 	p.h = h

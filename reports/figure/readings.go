@@ -75,6 +75,9 @@ func Series(d SeriesData) (f *Figure, err error) {
 			note = fmt.Sprintf("The %s, %s V/m, lies above the panel.", label, digits(d.LimitVPerM, 3))
 		}
 	}
+	for i, c := range curves {
+		curves[i].x, curves[i].y = fewer(c.x, c.y, a.X0, a.X1, int(2*b.W()))
+	}
 	a.trace(p.sheet, curves)
 	if d.LargestVPerM > 0 {
 		if q := a.at(pt{d.LargestTimeS / per, d.LargestVPerM}); finite(q) && b.contains(q) {
@@ -91,6 +94,35 @@ func Series(d SeriesData) (f *Figure, err error) {
 	a.frame(p.sheet)
 	p.under(b.Y0-axisBeneath-4, entriesOf(curves))
 	return p.foot(d.Title, note, d.Caution), nil
+}
+
+// fewer thins a long series for drawing: of each of n equal stretches of time
+// the first, lowest, highest and last sample are kept, in their order.
+func fewer(x, y []float64, x0, x1 float64, n int) (fx, fy []float64) {
+	x = x[:min(len(x), len(y))]
+	if len(x) <= 4*n {
+		return x, y
+	}
+	column := func(i int) int { return int(float64(n) * (x[i] - x0) / (x1 - x0)) }
+	for i := 0; i < len(x); {
+		lo, hi, j := i, i, i
+		for ; j < len(x) && column(j) == column(i); j++ {
+			if y[j] < y[lo] {
+				lo = j
+			}
+			if y[j] > y[hi] {
+				hi = j
+			}
+		}
+		last := -1
+		for _, k := range []int{i, min(lo, hi), max(lo, hi), j - 1} {
+			if k != last {
+				fx, fy, last = append(fx, x[k]), append(fy, y[k]), k
+			}
+		}
+		i = j
+	}
+	return fx, fy
 }
 
 // span60 writes a time in s, or in min where it is a whole number of them.

@@ -96,6 +96,11 @@ func frequency(hz float64) string {
 	return strconv.FormatFloat(roundTo(hz, 6), 'f', -1, 64) + " Hz"
 }
 
+// shortHz writes a number of hertz with the letter of its multiple: 100M.
+func shortHz(hz float64) string {
+	return strings.NewReplacer(" ", "", "Hz", "").Replace(frequency(hz))
+}
+
 // roundTo rounds to a number of significant digits.
 func roundTo(v float64, digits int) float64 {
 	r, err := strconv.ParseFloat(strconv.FormatFloat(v, 'g', digits, 64), 64)
