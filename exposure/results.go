@@ -236,6 +236,8 @@ type Assessment struct {
 	Inputs    []InputFile   `json:"inputs"`
 	// Profiles are ratio against distance along each housing's main beams.
 	Profiles []Profile `json:"profiles,omitempty"`
+	// Grids are sampled ratios for the contour lines of figures.
+	Grids []RatioGrid `json:"-"`
 }
 
 // Profile is the exposure ratio along a ray, for a figure. Each is a row alone.
