@@ -12,7 +12,7 @@ type Difference struct {
 	Class    string   `json:"class"`   // in table A
 	ClassB   string   `json:"class_b"` // in table B; the same but for CompareAs
 	Quantity Quantity `json:"quantity"`
-	Group    Group    `json:"-"`
+	Group    Group    `json:"group"`
 	FromHz   float64  `json:"from_hz"`
 	ToHz     float64  `json:"to_hz"`
 	// Item is what differs: "level", or the column of a row's other meaning:

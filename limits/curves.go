@@ -6,7 +6,7 @@ import "math"
 type Curve struct {
 	Class    string   `json:"class"`
 	Quantity Quantity `json:"quantity"`
-	Group    Group    `json:"-"`
+	Group    Group    `json:"group"`
 	// Lines are polylines by rising frequency, one for each stretch without a
 	// gap. Where bands meet, a line has both levels at the same frequency.
 	Lines [][]CurvePoint `json:"lines"`

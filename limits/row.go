@@ -94,6 +94,9 @@ func (g Group) String() string {
 	return string(g.Effect) + ", " + string(g.Region) + ", " + string(g.Kind)
 }
 
+// MarshalText writes the group by its name.
+func (g Group) MarshalText() ([]byte, error) { return []byte(g.String()), nil }
+
 // About is the provenance of a table.
 type About struct {
 	Title, IssuedBy, Edition            string
