@@ -1,6 +1,7 @@
 package antenna
 
 import (
+	"fmt"
 	"math"
 	"strings"
 	"testing"
@@ -26,6 +27,26 @@ func built(t require.TestingT) map[string]Pattern {
 	keep("two-beamwidth", p, err)
 	p, err = TwoBeamwidth(radians(0.6), radians(0.6), 40, 0)
 	keep("two-beamwidth narrow", p, err)
+	p, err = Omni(GainFromDBi(10), 0, radians(3))
+	keep("omni", p, err)
+	p, err = Sector(GainFromDBi(18), radians(65), 0, radians(6))
+	keep("sector", p, err)
+	p, err = Sector(GainFromDBi(8), radians(150), radians(40), 0)
+	keep("sector wide", p, err)
+	for _, d := range []float64{3, 50, 150} {
+		p, err = Dish(GainFromDBi(20*math.Log10(d)+7.7), d, 1)
+		keep(fmt.Sprintf("dish %g", d), p, err)
+	}
+	for _, h := range []float64{0.01, 0.25, 0.7, 5.3} {
+		p, _, err = Monopole(h, 1)
+		keep(fmt.Sprintf("monopole %g", h), p, err)
+	}
+	for _, n := range [][2]int{{1, 1}, {2, 3}, {8, 8}, {17, 4}, {64, 32}} {
+		for _, deg := range []float64{0, 10, 55} {
+			p, err = Active(ActivePanel{radians(80), radians(60), 30, 30, n[0], n[1], 0.7, 0.5, Interval{-radians(deg), radians(deg)}, Interval{0, radians(deg / 4)}})
+			keep(fmt.Sprintf("active %v %g", n, deg), p, err)
+		}
+	}
 	f, err := Read(strings.NewReader(lopsided(40, 20, 12, 6)), ReadOptions{VerticalSense: SenseUp})
 	require.NoError(t, err)
 	m["two cuts"] = f.Pattern
@@ -117,6 +138,9 @@ func TestRelativeRangeShrinks(t *testing.T) {
 			rapid.Check(t, func(t *rapid.T) {
 				f := rapid.Float64Range(-math.Pi, math.Pi).Draw(t, "phi")
 				e := rapid.Float64Range(-math.Pi/2, math.Pi/2-1e-6).Draw(t, "theta")
+				if strings.HasPrefix(name, "monopole") && e < 0 && e > -2e-7 {
+					t.Skip("the ground plane is a true step")
+				}
 				r := p.RelativeRange(Interval{f, f + 1e-7}, Interval{e, e + 1e-7})
 				require.LessOrEqual(t, r.Width(), 1e-3*r.Hi+1e-9)
 			})
