@@ -23,6 +23,7 @@ var limitsTable = TableSchema{
 		quantity("area", "cm2", "averaging area; point values are compared, which is never lower", moreThan(0), rare),
 		number("brief a", "incident energy a + b*sqrt(t) in J/m2 for stays shorter than the averaging time", rare),
 		number("brief b", "the b of it", rare),
+		number("brief exponent", "of the frequency, in f unit, that this energy is multiplied by", blank("0"), rare),
 		choice("region", "whole body|local", "what part of the body the level is for", blank("whole body")),
 		choice("effect", "thermal|stimulation", "thermal levels add as powers, stimulation levels as fields", blank("thermal")),
 		choice("kind", "mean|peak", "of the field", blank("mean")),
