@@ -1,0 +1,170 @@
+package reports
+
+import (
+	"bytes"
+	"context"
+	"fmt"
+	"image/png"
+	"runtime"
+	"strings"
+
+	"example.org/standclear/exposure"
+	"example.org/standclear/reports/figure"
+	"golang.org/x/sync/errgroup"
+)
+
+// picture is a finished figure: as a file of its own, and for the workbook.
+type picture struct {
+	name          string // of the files, without extension
+	title         string
+	width, height float64 // in points
+	pixels        int     // width of the PNG
+	svg, png      []byte
+}
+
+// mostProfiles bounds the figures of ratio against distance; the workbook's
+// table has every profile.
+const mostProfiles = 24
+
+// draw makes the figures of an assessment: a plan of each surface, one more
+// with contour lines of the ratio where these were computed, and the ratio
+// against distance along the main beams.
+func draw(ctx context.Context, a *exposure.Assessment) ([]picture, error) {
+	type job struct {
+		name string
+		draw func() (*figure.Figure, error)
+	}
+	var jobs []job
+	if a.Site != nil {
+		for i, s := range a.Site.Surfaces {
+			data := figure.PlanData{Site: a.Site, Surface: s.ID, Classes: a.Classes, Zones: a.Zones, Points: a.Points}
+			name := fmt.Sprintf("plan-%02d-%s", i+1, slug(s.ID))
+			jobs = append(jobs, job{name, func() (*figure.Figure, error) { return figure.Plan(data) }})
+			for k := range a.Grids {
+				g := &a.Grids[k]
+				if g.Section != nil || g.Surface != s.ID {
+					continue
+				}
+				data := data
+				data.Grid, data.Zones = g, nil
+				for _, z := range a.Zones {
+					if z.Class == g.Class {
+						data.Zones = append(data.Zones, z)
+					}
+				}
+				name := fmt.Sprintf("ratio-%02d-%s-%s", i+1, slug(s.ID), slug(g.Class))
+				jobs = append(jobs, job{name, func() (*figure.Figure, error) { return figure.Plan(data) }})
+			}
+		}
+	}
+	sections := 0
+	for _, z := range a.Zones {
+		if z.Section == nil || a.Site == nil {
+			continue
+		}
+		sections++
+		data := figure.SectionData{Site: a.Site, Section: *z.Section, Classes: a.Classes, Zones: []exposure.Zone{z}}
+		jobs = append(jobs, job{fmt.Sprintf("section-%02d-%s", sections, slug(z.Class)), func() (*figure.Figure, error) { return figure.Section(data) }})
+	}
+	for i, lines := range beams(a) {
+		if i == mostProfiles {
+			break
+		}
+		data := figure.ProfileData{SiteName: a.SiteName, Lines: lines, Classes: a.Classes, Marks: a.Distances}
+		for k := range a.Sources {
+			if a.Sources[k].Antenna == lines[0].Antenna {
+				data.Source = &a.Sources[k]
+			}
+		}
+		jobs = append(jobs, job{fmt.Sprintf("beam-%02d-%s", i+1, slug(lines[0].Antenna)), func() (*figure.Figure, error) { return figure.Profile(data) }})
+	}
+
+	out := make([]picture, len(jobs))
+	group, ctx := errgroup.WithContext(ctx)
+	group.SetLimit(runtime.GOMAXPROCS(0))
+	for i, j := range jobs {
+		group.Go(func() error {
+			if err := ctx.Err(); err != nil {
+				return err
+			}
+			f, err := j.draw()
+			if err != nil {
+				return fmt.Errorf("figure %s: %w", j.name, err)
+			}
+			out[i], err = render(j.name, f)
+			return err
+		})
+	}
+	return out, group.Wait()
+}
+
+func render(name string, f *figure.Figure) (picture, error) {
+	p := picture{name: name, title: oneLine(f.Title)}
+	p.width, p.height = f.Size()
+	var err error
+	if p.svg, err = f.SVG(); err != nil {
+		return p, fmt.Errorf("figure %s: %w", name, err)
+	}
+	if p.png, err = f.PNG(); err != nil {
+		return p, fmt.Errorf("figure %s: %w", name, err)
+	}
+	size, err := png.DecodeConfig(bytes.NewReader(p.png))
+	p.pixels = size.Width
+	return p, err
+}
+
+// beams groups the profiles of one antenna and direction, one line a class.
+func beams(a *exposure.Assessment) [][]exposure.Profile {
+	type key struct {
+		antenna            string
+		azimuth, elevation float64
+	}
+	at := map[key]int{}
+	var out [][]exposure.Profile
+	for _, p := range a.Profiles {
+		if !drawable(p) {
+			continue
+		}
+		k := key{p.Antenna, p.AzimuthDeg, p.ElevationDeg}
+		i, ok := at[k]
+		if !ok {
+			i = len(out)
+			at[k] = i
+			out = append(out, nil)
+		}
+		out[i] = append(out[i], p)
+	}
+	return out
+}
+
+// drawable reports whether a profile has anything for a logarithmic axis.
+func drawable(p exposure.Profile) bool {
+	for i, r := range p.Ratio {
+		if r > 0 && p.DistanceM[i] > 0 {
+			return true
+		}
+	}
+	return false
+}
+
+// slug makes a harmless file name part of any text: a name the user typed never
+// becomes a path.
+func slug(text string) string {
+	const most = 32
+	var b strings.Builder
+	for _, r := range strings.ToLower(text) {
+		switch {
+		case r >= 'a' && r <= 'z' || r >= '0' && r <= '9':
+			b.WriteRune(r)
+		case b.Len() > 0 && !strings.HasSuffix(b.String(), "-"):
+			b.WriteByte('-')
+		}
+		if b.Len() >= most {
+			break
+		}
+	}
+	if s := strings.Trim(b.String(), "-"); s != "" {
+		return s
+	}
+	return "unnamed"
+}
