@@ -183,28 +183,44 @@ func (c *Cut) between(i, j int) span {
 // Largest returns the largest loss of the cut in dB.
 func (c *Cut) Largest() float64 { return c.whole().hi }
 
-// PeakRad returns the angle of the least loss; of a flat top, its middle.
+// PeakRad returns the angle in rad of the least loss: of a flat top its middle,
+// of several equal tops the one nearest angle 0.
 func (c *Cut) PeakRad() float64 {
-	for i, s := range c.samples {
-		if s.LossDB > 0 {
+	peak, _ := c.peakWithin(math.Inf(1))
+	return peak
+}
+
+// peakWithin returns the angle of the least loss among the samples within reach
+// of angle 0, and that loss.
+func (c *Cut) peakWithin(reach float64) (peak, loss float64) {
+	n := len(c.samples)
+	loss = math.Inf(1)
+	for _, s := range c.samples {
+		if math.Abs(s.AngleRad) <= reach {
+			loss = min(loss, s.LossDB)
+		}
+	}
+	peak = math.Inf(1)
+	for i := 0; i < n; i++ {
+		if c.samples[i].LossDB != loss || math.Abs(c.samples[i].AngleRad) > reach {
 			continue
 		}
-		j := i
-		for j+1 < len(c.samples) && c.samples[j+1].LossDB == 0 {
-			j++
+		from := c.samples[i].AngleRad
+		for i+1 < n && c.samples[i+1].LossDB == loss {
+			i++
 		}
-		// A flat top that runs over the seam of a closed cut starts before it.
-		start := s.AngleRad
-		if c.closed && i == 0 && j < len(c.samples)-1 {
-			k := len(c.samples) - 1
-			for c.samples[k].LossDB == 0 {
-				start = c.samples[k].AngleRad - 2*math.Pi
-				k--
+		to := c.samples[i].AngleRad
+		// A flat top that runs over the seam of a closed cut ends behind it.
+		if c.closed && i == n-1 && from > c.samples[0].AngleRad {
+			for j := 0; j < n && c.samples[j].LossDB == loss; j++ {
+				to = c.samples[j].AngleRad + 2*math.Pi
 			}
 		}
-		return (start + c.samples[j].AngleRad) / 2
+		if mid := (from + to) / 2; math.Abs(mid) < math.Abs(peak) {
+			peak = mid
+		}
 	}
-	return c.samples[0].AngleRad
+	return peak, loss
 }
 
 // Mirrored returns the cut with its angles negated.

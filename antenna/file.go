@@ -115,6 +115,20 @@ func Read(r io.Reader, o ReadOptions) (*File, error) {
 	if err != nil {
 		return nil, faultAt(0, "", "the text cannot be decoded: %v", err)
 	}
+	f, err := parse(data, o)
+	if err != nil {
+		return nil, err
+	}
+	if f.HasGain && !f.Envelope {
+		if err := CheckDirectivity(f.Pattern, f.PeakGain, 0); err != nil {
+			f.warn("%v", err)
+		}
+	}
+	return f, nil
+}
+
+// parse reads a decoded file in the format that its content shows.
+func parse(data []byte, o ReadOptions) (*File, error) {
 	start := bytes.TrimSpace(data)
 	switch {
 	case len(start) == 0:

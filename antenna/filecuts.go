@@ -125,10 +125,10 @@ func (f *File) useCuts(h, v *Cut, sense, told VerticalSense, line int) error {
 		}
 		sense = told
 	} else if sense == SenseUp && f.HasStatedTilt && math.Abs(f.StatedTiltRad) > tiltTolerance &&
-		math.Abs(v.PeakRad()-f.StatedTiltRad) <= tiltTolerance && math.Abs(v.PeakRad()+f.StatedTiltRad) > tiltTolerance {
+		math.Abs(v.frontPeak()-f.StatedTiltRad) <= tiltTolerance && math.Abs(v.frontPeak()+f.StatedTiltRad) > tiltTolerance {
 		// The format's rule and the file's own tilt contradict each other.
 		return faultAt(line, "", "the elevation cut peaks %.1f deg above the horizon though the file states %.1f deg of downtilt; say which way its positive angles point in the column \"vertical cut\"",
-			degrees(v.PeakRad()), degrees(f.StatedTiltRad))
+			degrees(v.frontPeak()), degrees(f.StatedTiltRad))
 	}
 	if sense == SenseUnknown {
 		if a := v.Asymmetry(); a > asymmetryDB {
@@ -138,7 +138,7 @@ func (f *File) useCuts(h, v *Cut, sense, told VerticalSense, line int) error {
 	if sense == SenseDown {
 		v = v.Mirrored()
 	}
-	if peak := degrees(v.PeakRad()); math.Abs(peak) > offHorizon {
+	if peak := degrees(v.frontPeak()); math.Abs(peak) > offHorizon {
 		return faultAt(line, "", "the vertical cut peaks at %.1f deg from the horizon in front; its angles must count from there (not from the zenith, not from behind)", peak)
 	}
 	p, err := TwoCuts(h, v)
@@ -146,10 +146,19 @@ func (f *File) useCuts(h, v *Cut, sense, told VerticalSense, line int) error {
 		return faultAt(line, "", "%v", err)
 	}
 	f.Pattern, f.Horizontal, f.Vertical = p, h, v
-	f.PeakTiltRad = -v.PeakRad()
+	f.PeakTiltRad = -v.frontPeak()
 	f.PeakAzimuthRad = h.PeakRad()
 	f.checkPeaks()
 	return nil
+}
+
+// frontPeak returns the elevation of the vertical cut's peak: in front, unless
+// what is behind is more than a dB stronger (a round antenna has both alike).
+func (c *Cut) frontPeak() float64 {
+	if peak, loss := c.peakWithin(math.Pi/2 + 1e-9); loss <= 1 {
+		return peak
+	}
+	return c.PeakRad()
 }
 
 func (f *File) checkPeaks() {

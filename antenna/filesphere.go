@@ -122,7 +122,7 @@ func (f *File) useSphere(d []direction) error {
 		return faultAt(0, "", "%v", err)
 	}
 	f.Pattern, f.Horizontal, f.Vertical = p, p.horizontal, p.vertical
-	f.PeakTiltRad, f.PeakAzimuthRad = -p.vertical.PeakRad(), p.horizontal.PeakRad()
+	f.PeakTiltRad, f.PeakAzimuthRad = -p.vertical.frontPeak(), p.horizontal.PeakRad()
 	if stepAz > gapDeg+1e-9 || stepEl > gapDeg+1e-9 {
 		f.warn("the sphere has a point every %.3g deg of azimuth and %.3g deg of elevation only", stepAz, stepEl)
 	}

@@ -7,12 +7,15 @@ import (
 
 // Beamwidth returns the width in rad between the two angles at which the cut
 // first falls db below its peak, on either side of the peak; ok is false where
-// it never does (a round cut).
+// it never does (a round cut), and the width then 0.
 func (c *Cut) Beamwidth(db float64) (rad float64, ok bool) {
 	peak := c.PeakRad()
 	up, ok1 := c.falls(peak, 1, db)
 	down, ok2 := c.falls(peak, -1, db)
-	return up + down, ok1 && ok2
+	if !ok1 || !ok2 {
+		return 0, false
+	}
+	return up + down, true
 }
 
 // falls returns how far from the angle a, in the sense given, the loss first
