@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strings"
 
 	"example.org/standclear/limits"
 )
@@ -97,7 +98,7 @@ func Levels(d LevelsData) (f *Figure, err error) {
 			name = string(g.quantity)
 		}
 		a.draw(p.sheet, logTicks(a.X0, a.X1, int(b.W()/24), shortHz), logTicks(a.Y0, a.Y1, 8, plainOrPower),
-			"frequency [Hz]", fmt.Sprintf("%s %s [%s]", name, g.quantity, g.unit), true)
+			"frequency [Hz]", fmt.Sprintf("%s %s [%s]", name, g.quantity, strings.ReplaceAll(g.unit, "m2", "m²")), true)
 		for _, l := range g.lines {
 			a.trace(p.sheet, []curve{{x: l.Hz, y: l.Level, style: style[l.Label]}})
 		}

@@ -12,6 +12,7 @@ import (
 	"gonum.org/v1/plot/font/liberation"
 	"gonum.org/v1/plot/text"
 	"gonum.org/v1/plot/vg"
+	"gonum.org/v1/plot/vg/vgimg"
 )
 
 // fonts holds Liberation Sans, which the drawing library brings along: no font
@@ -186,10 +187,38 @@ func (s *sheet) circle(c pt, r float64, fill bool, g uint8, st stroke) {
 	}
 }
 
-func (s *sheet) image(b Box, img image.Image) {
+// image puts a picture into a box. On a raster page its pixels are copied to
+// the nearest place, for the library's smooth scaling costs more than the rest
+// of a plan.
+func (s *sheet) image(b Box, img *image.Gray) {
 	s.ops = append(s.ops, func(c vg.Canvas) {
+		if v, ok := c.(*vgimg.Canvas); ok {
+			copyPixels(v, b, img)
+			return
+		}
 		c.DrawImage(vg.Rectangle{Min: vp(pt{b.X0, b.Y0}), Max: vp(pt{b.X1, b.Y1})}, img)
 	})
+}
+
+// copyPixels fills the pixels of the page whose middle lies in the box; y = 0
+// is the page's upper edge.
+func copyPixels(c *vgimg.Canvas, b Box, img *image.Gray) {
+	k := c.DPI() / 72
+	dst, w, h := c.Image(), img.Bounds().Dx(), img.Bounds().Dy()
+	rgba, direct := dst.(*image.RGBA)
+	for y := max(0, int(math.Ceil(-b.Y1*k-0.5))); y < dst.Bounds().Dy() && float64(y)+0.5 < -b.Y0*k; y++ {
+		row := min(h-1, int(((float64(y)+0.5)/k+b.Y1)/b.H()*float64(h)))
+		for x := max(0, int(math.Ceil(b.X0*k-0.5))); x < dst.Bounds().Dx() && float64(x)+0.5 < b.X1*k; x++ {
+			col := min(w-1, int(((float64(x)+0.5)/k-b.X0)/b.W()*float64(w)))
+			g := img.Pix[row*img.Stride+col]
+			if direct {
+				i := rgba.PixOffset(x, y)
+				rgba.Pix[i], rgba.Pix[i+1], rgba.Pix[i+2], rgba.Pix[i+3] = g, g, g, 255
+			} else {
+				dst.Set(x, y, color.Gray{Y: g})
+			}
+		}
+	}
 }
 
 // align says which point of a text is put at a position: 0, 0 is the lower

@@ -11,6 +11,8 @@ var lineStyles = []stroke{
 	{width: 1.7, dash: []float64{1.7, 2.3}},
 	{width: 1.5, dash: []float64{14, 4}},
 	{width: 1.5, dash: []float64{8, 2.5, 1.5, 2.5, 1.5, 2.5}},
+	{width: 0.9, dash: []float64{3, 1.5}},
+	{width: 0.9, dash: []float64{12, 2, 3, 2}},
 }
 
 // hatches tell the areas of classes apart: by slant, spacing and dashes.
@@ -24,14 +26,16 @@ var hatches = []struct {
 	{math.Pi / 2, 4.5, stroke{width: 0.45, grey: 40}},
 	{math.Pi / 4, 4, stroke{width: 0.6, grey: 40, dash: []float64{2, 2}}},
 	{-math.Pi / 4, 4, stroke{width: 0.6, grey: 40, dash: []float64{2, 2}}},
+	{math.Pi / 8, 6.5, stroke{width: 0.45, grey: 40}},
+	{-math.Pi / 8, 6.5, stroke{width: 0.45, grey: 40}},
 }
 
-// classLine returns the line of the i-th class; from the seventh on the lines
-// repeat, thinner and greyer.
+// classLine returns the line of the i-th class; past the last style the lines
+// repeat, half as wide.
 func classLine(i int) stroke {
 	s := lineStyles[i%len(lineStyles)]
 	if i >= len(lineStyles) {
-		s.width, s.grey = 0.9, 90
+		s.width /= 2
 	}
 	return s
 }

@@ -28,12 +28,7 @@ func (m *chart) northArrow(c pt) {
 // scaleBar draws a bar of a round length, at most width wide, from its left end.
 func (m *chart) scaleBar(at pt, width float64) {
 	perM := m.Box.W() / (m.X1 - m.X0)
-	total := niceStep(width / perM * 0.35)
-	for _, k := range []float64{2, 5, 10, 20, 50} {
-		if l := niceStep(total * k / 2); l*perM <= width {
-			total = l
-		}
-	}
+	total := niceBelow(width / perM)
 	b := Box{at[0], at[1], at[0] + total*perM, at[1] + 4}
 	half := (b.X0 + b.X1) / 2
 	m.fill([][]pt{Box{b.X0, b.Y0, half, b.Y1}.ring()}, 0)
@@ -55,6 +50,13 @@ func (m *chart) antennas() {
 	}
 	var marks []*mark
 	anyArrow, anyRound, anyStandby := false, false, false
+	drawDot := func(q *mark) {
+		if q.off {
+			standbyDot(m.sheet, q.foot)
+		} else {
+			antennaDot(m.sheet, q.foot)
+		}
+	}
 	for i := range m.site.Sources {
 		s := &m.site.Sources[i]
 		foot := m.at(pt{s.Position.X, s.Position.Y})
@@ -81,6 +83,7 @@ func (m *chart) antennas() {
 			marks = append(marks, same)
 		}
 		same.ids = append(same.ids, s.ID)
+		same.off = same.off && q.off
 	}
 	for _, q := range marks {
 		if !q.round {
@@ -88,9 +91,9 @@ func (m *chart) antennas() {
 		}
 	}
 	for _, q := range marks {
-		antennaDot(m.sheet, q.foot)
-		m.clutter.box(Box{q.foot[0] - 3, q.foot[1] - 3, q.foot[0] + 3, q.foot[1] + 3}, 2)
-		m.clutter.lines([][]pt{{q.foot, q.tip}}, 1.5, false)
+		drawDot(q)
+		m.clutter.box(Box{q.foot[0] - 3, q.foot[1] - 3, q.foot[0] + 3, q.foot[1] + 3}, 3)
+		m.clutter.lines([][]pt{{q.foot, q.tip}}, 3, false)
 		t := tag{text: joined(q.ids), anchor: q.tip, face: labelFace, gap: 3.5}
 		if !q.round {
 			t.toward = math.Atan2(q.tip[1]-q.foot[1], q.tip[0]-q.foot[0])
@@ -107,6 +110,13 @@ func (m *chart) antennas() {
 	}
 	if anyRound {
 		m.entries = append(m.entries, entry{markSample(antennaDot), "antenna, the same at every azimuth"})
+	}
+	if anyStandby {
+		text := "antenna on standby, computed as if on"
+		if m.site.OnlyOn {
+			text = "antenna on standby, left out of the computation"
+		}
+		m.entries = append(m.entries, entry{markSample(standbyDot), text})
 	}
 }
 
@@ -127,6 +137,11 @@ func joined(ids []string) string {
 
 func antennaDot(s *sheet, c pt) {
 	s.circle(c, 2.6, true, 0, stroke{width: 1, grey: 255})
+}
+
+func standbyDot(s *sheet, c pt) {
+	s.circle(c, 2.6, true, 255, stroke{width: 1.1})
+	s.circle(c, 0.9, true, 0, stroke{})
 }
 
 func (m *chart) arrow(from, to pt) { arrowOn(m.sheet, from, to) }
@@ -198,7 +213,7 @@ func (m *chart) places(points []exposure.PointResult, surface *exposure.Surface)
 			draw, within = placeWithin, true
 		}
 		draw(m.sheet, c)
-		m.clutter.box(Box{c[0] - 3, c[1] - 3, c[0] + 3, c[1] + 3}, 2)
+		m.clutter.box(Box{c[0] - 3, c[1] - 3, c[0] + 3, c[1] + 3}, 3)
 		m.tags = append(m.tags, tag{text: text, anchor: c, face: labelFace, gap: 4})
 	}
 	who := ", with its exposure ratio for the class open to it"

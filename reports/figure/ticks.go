@@ -24,6 +24,18 @@ func niceStep(v float64) float64 {
 	return 10 * p
 }
 
+// niceBelow returns the largest of 1, 2, 5 times a power of ten that is at most
+// v.
+func niceBelow(v float64) float64 {
+	p := math.Pow(10, math.Floor(math.Log10(v)))
+	for _, m := range []float64{5, 2} {
+		if m*p <= v*(1+1e-9) {
+			return m * p
+		}
+	}
+	return p
+}
+
 // linearTicks returns at most n labelled marks from lo to hi.
 func linearTicks(lo, hi float64, n int) []tick {
 	step := niceStep((hi - lo) / float64(max(n, 1)))
@@ -43,7 +55,8 @@ func linearTicks(lo, hi float64, n int) []tick {
 // room; label writes a value.
 func logTicks(lo, hi float64, n int, label func(float64) string) []tick {
 	d0, d1 := int(math.Floor(math.Log10(lo)+1e-9)), int(math.Ceil(math.Log10(hi)-1e-9))
-	every := max(1, int(math.Ceil(float64(d1-d0+1)/float64(max(n, 2)))))
+	first, last := int(math.Ceil(math.Log10(lo)-1e-9)), int(math.Floor(math.Log10(hi)+1e-9))
+	every := max(1, int(math.Ceil(float64(last-first+1)/float64(max(n, 2)))))
 	few := math.Log10(hi/lo)*2.5 < float64(n)
 	var out []tick
 	for d := d0; d <= d1; d++ {
@@ -53,7 +66,7 @@ func logTicks(lo, hi float64, n int, label func(float64) string) []tick {
 				continue
 			}
 			switch {
-			case m == 1 && (d-d0)%every == 0, few && (m == 2 || m == 5):
+			case m == 1 && (d-first)%every == 0, few && (m == 2 || m == 5):
 				out = append(out, tick{v, label(v)})
 			case d1-d0 <= 8 || m == 1:
 				out = append(out, tick{v, ""})
@@ -63,10 +76,8 @@ func logTicks(lo, hi float64, n int, label func(float64) string) []tick {
 	return out
 }
 
-var superscript = strings.NewReplacer("-", "⁻", "0", "⁰", "1", "¹", "2", "²", "3", "³", "4", "⁴", "5", "⁵", "6", "⁶", "7", "⁷", "8", "⁸", "9", "⁹")
-
-// plainOrPower writes 0.001 to 1000 as they are and other values as a digit
-// times a power of ten.
+// plainOrPower writes 0.001 to 1000 as they are and other values with an
+// exponent: the font has no raised figures.
 func plainOrPower(v float64) string {
 	if v >= 0.00099 && v <= 1001 {
 		return strconv.FormatFloat(v, 'f', -1, 64)
@@ -76,11 +87,7 @@ func plainOrPower(v float64) string {
 	if err != nil {
 		return minus(strconv.FormatFloat(v, 'g', 3, 64))
 	}
-	p := "10" + superscript.Replace(strconv.Itoa(n))
-	if m == "1" {
-		return p
-	}
-	return m + "×" + p
+	return m + "e" + minus(strconv.Itoa(n))
 }
 
 // frequency writes a frequency in Hz with the unit that suits it.
