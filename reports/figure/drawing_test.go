@@ -27,6 +27,7 @@ func TestSVGIsWellFormedAndItsPictureIsCalledAPNG(t *testing.T) {
 	require.NoError(t, err)
 	assert.Contains(t, string(svg), "data:image/png;base64,")
 	assert.NotContains(t, string(svg), "image/jpg")
+	assert.Contains(t, string(svg), "<title>Harbour mill (invented): plan of surface main roof</title>")
 	assert.Contains(t, string(svg), "font-family:'Liberation Sans',Arial")
 	wellFormed(t, svg)
 }
