@@ -69,7 +69,7 @@ func (b *bastaText) fault(d *json.Decoder, err error) error {
 	var syntax *json.SyntaxError
 	at := d.InputOffset()
 	if errors.As(err, &syntax) {
-		at = syntax.Offset
+		at = max(at, syntax.Offset)
 	}
 	return faultAt(b.lineAt(at), "", "not readable as JSON: %v", err)
 }

@@ -185,15 +185,20 @@ func (t *nsmaText) record(n int, tag, value string) error {
 	return nil
 }
 
+// nsmaNumber reads the first number of a record, which may carry a tolerance.
 func nsmaNumber(n int, tag, value string) (float64, error) {
 	first := value
 	if i := strings.IndexAny(value, ",;/ \t"); i >= 0 {
 		first = value[:i]
 	}
-	first = strings.ReplaceAll(first, "\u2212", "-")
-	v, err := strconv.ParseFloat(first, 64)
-	if err != nil || math.IsNaN(v) || math.Abs(v) > 1e9 || strings.ContainsAny(first, "xX_") {
-		return 0, faultAt(n, value, "is not a number for %s", tag)
+	return plainNumber(n, tag, strings.ReplaceAll(first, "\u2212", "-"))
+}
+
+// plainNumber reads a number and nothing beside it.
+func plainNumber(n int, tag, text string) (float64, error) {
+	v, err := strconv.ParseFloat(text, 64)
+	if err != nil || math.IsNaN(v) || math.Abs(v) > 1e9 || strings.ContainsAny(text, "xX_") {
+		return 0, faultAt(n, text, "is not a number for %s", tag)
 	}
 	return v, nil
 }
@@ -215,11 +220,11 @@ func (t *nsmaText) point(n int, line string) error {
 	if len(parts) < 2 || len(parts) > 3 {
 		return faultAt(n, line, "is not a point; write angle,magnitude,phase,")
 	}
-	deg, err := nsmaNumber(n, "the angle", strings.TrimSpace(parts[0]))
+	deg, err := plainNumber(n, "the angle", strings.TrimSpace(parts[0]))
 	if err != nil {
 		return err
 	}
-	db, err := nsmaNumber(n, "the magnitude", strings.TrimSpace(parts[1]))
+	db, err := plainNumber(n, "the magnitude", strings.TrimSpace(parts[1]))
 	if err != nil {
 		return err
 	}
