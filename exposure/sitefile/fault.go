@@ -68,12 +68,12 @@ func (g *grid) fault(r gridRow, i int, header, format string, args ...any) Fault
 }
 
 // sorted returns the faults by table, row and column, the first of each cell
-// only. order gives the rank of a table's file or sheet.
-func (fs Faults) sorted(order func(file, sheet string) int) Faults {
+// only. order gives the ranks of a fault's table and column.
+func (fs Faults) sorted(order func(Fault) (table, column int)) Faults {
 	slices.SortStableFunc(fs, func(a, b Fault) int {
-		return cmp.Or(
-			cmp.Compare(order(a.File, a.Sheet), order(b.File, b.Sheet)),
-			cmp.Compare(a.File, b.File), cmp.Compare(a.Sheet, b.Sheet), cmp.Compare(a.Row, b.Row))
+		ta, ca := order(a)
+		tb, cb := order(b)
+		return cmp.Or(cmp.Compare(ta, tb), cmp.Compare(a.File, b.File), cmp.Compare(a.Sheet, b.Sheet), cmp.Compare(a.Row, b.Row), cmp.Compare(ca, cb))
 	})
 	type cell struct {
 		file, sheet, column string

@@ -132,6 +132,20 @@ func withoutCommas(t string, parses func(string) bool) string {
 // Parse returns a quantity such as "61.4V/m" or "98 MHz" in the SI unit of its
 // dimension, and the unit it was given in.
 func Parse(text string) (si float64, u Unit, err error) {
+	v, u, err := Split(text)
+	if err != nil {
+		return 0, Unit{}, err
+	}
+	si = u.ToSI(v)
+	if math.IsInf(si, 0) || math.IsNaN(si) {
+		return 0, Unit{}, &NumberError{text, "is too large a number", "check the figure and its unit"}
+	}
+	return si, u, nil
+}
+
+// Split returns the number of a quantity such as "61.4V/m" as it was typed, and
+// its unit.
+func Split(text string) (v float64, u Unit, err error) {
 	t := strings.TrimSpace(text)
 	n, _ := scanNumber(t, false)
 	if n == 0 {
@@ -152,13 +166,9 @@ func Parse(text string) (si float64, u Unit, err error) {
 		}
 		return 0, Unit{}, &NumberError{text, fmt.Sprintf("has an unknown unit %q", symbol), hint}
 	}
-	v, err := strconv.ParseFloat(t[:n], 64)
+	v, err = strconv.ParseFloat(t[:n], 64)
 	if err != nil {
 		return 0, Unit{}, &NumberError{text, "is too large a number", "write it in a larger unit"}
 	}
-	si = u.ToSI(v)
-	if math.IsInf(si, 0) || math.IsNaN(si) {
-		return 0, Unit{}, &NumberError{text, "is too large a number", "check the figure and its unit"}
-	}
-	return si, u, nil
+	return v, u, nil
 }
