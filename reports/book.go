@@ -151,7 +151,6 @@ func (b *book) setUp(p page) {
 		if p.onePage {
 			layout.FitToHeight = ptr(1)
 		}
-		b.keep(f.SetSheetProps(p.name, &excelize.SheetPropsOptions{FitToPage: ptr(true)}))
 	}
 	b.keep(f.SetPageLayout(p.name, layout))
 	b.keep(f.SetPageMargins(p.name, &excelize.PageLayoutMarginsOptions{
@@ -179,6 +178,10 @@ func (b *book) setUp(p page) {
 		if p.filterTo > p.headRow {
 			b.keep(f.AutoFilter(p.name, fmt.Sprintf("A%d:%s", p.headRow, cellName(len(p.widths), p.filterTo)), nil))
 		}
+	}
+	if !p.free {
+		// Last: a filter resets the sheet's properties.
+		b.keep(f.SetSheetProps(p.name, &excelize.SheetPropsOptions{FitToPage: ptr(true)}))
 	}
 }
 
@@ -244,7 +247,7 @@ func (s *sheet) blank() { s.row++ }
 // points) that its length needs when none is given: merged cells do not grow by
 // themselves.
 func (s *sheet) merged(text string, l look, height float64) {
-	n := max(len(s.page.widths), 1)
+	n := len(s.page.widths)
 	var width float64
 	for _, w := range s.page.widths {
 		width += w
@@ -258,23 +261,51 @@ func (s *sheet) merged(text string, l look, height float64) {
 	}
 }
 
+// Heights of a line of text in points, and of the tallest row that the format
+// has room for, with a margin.
+const (
+	bodyLine   = 11.5
+	tallestRow = 400.0
+)
+
 func (s *sheet) lineHeight(l look) float64 {
-	switch l.role {
-	case section:
+	if l.role == section {
 		return 16
-	case caution:
-		return 13.5
 	}
-	return 12.5
+	return bodyLine
 }
 
 // textHeight estimates the height in points of text wrapped to a width.
 func textHeight(text string, width, line float64) float64 {
+	return math.Min(wrapped(text, width)*line+3, tallestRow)
+}
+
+// wrapped estimates the number of lines that a text takes in a column of a
+// width that is stated, as widths are, in digits of the standard font: text is
+// set smaller. Programs do not agree on row heights, so that a row of wrapped
+// text states its own.
+func wrapped(text string, width float64) float64 {
+	const perDigit = 1.32
+	room := math.Max(width*perDigit-1, 1)
 	lines := 0.0
 	for part := range strings.SplitSeq(text, "\n") {
-		lines += math.Max(1, math.Ceil(float64(utf8.RuneCountInString(part))/(width*1.08)))
+		n, left := 1.0, room
+		for word := range strings.FieldsSeq(part) {
+			w := float64(utf8.RuneCountInString(word))
+			if w > left && left < room {
+				n++
+				left = room
+			}
+			for w > left {
+				n++
+				w -= left
+				left = room
+			}
+			left -= w + 1
+		}
+		lines += n
 	}
-	return math.Min(lines*line+2, 400)
+	return lines
 }
 
 // section writes a heading between two tables of a sheet.
@@ -290,13 +321,13 @@ func (s *sheet) table(columns []column) {
 	cells := make([]any, len(columns))
 	height := 0.0
 	for i, c := range columns {
-		r := head
+		l := look{role: head, indent: s.indented(i)}
 		if c.digits != asText {
-			r = headNumber
+			l = look{role: headNumber}
 			s.b.explained = append(s.b.explained, explained{s.page.name, c})
 		}
-		cells[i] = excelize.Cell{StyleID: s.b.style(look{role: r}), Value: cellText(c.header())}
-		height = math.Max(height, headHeight(c.header(), s.width(i)))
+		cells[i] = excelize.Cell{StyleID: s.b.style(l), Value: cellText(c.header())}
+		height = math.Max(height, wrapped(c.header(), s.width(i)*0.92)*bodyLine+4)
 	}
 	s.put(cells, height)
 }
@@ -308,24 +339,6 @@ func (s *sheet) width(i int) float64 {
 	return 9
 }
 
-// headHeight estimates the height of a header cell, which breaks at words.
-func headHeight(text string, width float64) float64 {
-	lines, room := 1, width*0.95
-	for word := range strings.FieldsSeq(text) {
-		n := float64(utf8.RuneCountInString(word)) + 1
-		if n > room && room < width*0.95 {
-			lines++
-			room = width * 0.95
-		}
-		room -= n
-		for room < -1 {
-			lines++
-			room += width * 0.95
-		}
-	}
-	return float64(lines)*12 + 4
-}
-
 // line writes a row of the current table; strong rows are totals or results
 // that must not be overlooked.
 func (s *sheet) line(values ...any)   { s.cells(false, values) }
@@ -333,32 +346,49 @@ func (s *sheet) strong(values ...any) { s.cells(true, values) }
 
 func (s *sheet) cells(strong bool, values []any) {
 	cells := make([]any, len(values))
+	lines := 1.0
 	for i, v := range values {
 		d := asText
 		if i < len(s.columns) {
 			d = s.columns[i].digits
 		}
-		cells[i] = s.b.cell(v, d, strong)
+		c := s.b.cell(v, d, strong, s.indented(i))
+		if text, ok := c.Value.(string); ok {
+			lines = math.Max(lines, wrapped(text, s.width(i)))
+		}
+		cells[i] = c
 	}
-	s.put(cells, 0)
+	height := 0.0 // one line: left to the program that shows it
+	if lines > 1 {
+		height = math.Min(lines*bodyLine+3, tallestRow)
+	}
+	s.put(cells, height)
+}
+
+// indented reports whether a column of text follows a column of numbers: the
+// two would touch, one being right-aligned and the other left-aligned.
+func (s *sheet) indented(i int) bool {
+	return i > 0 && i < len(s.columns) && s.columns[i].digits == asText && s.columns[i-1].digits != asText
 }
 
 // cell turns a value into a styled cell. Infinite numbers become words, since a
 // cell holds none; not-a-number is a fault of the caller and stops the report.
-func (b *book) cell(v any, d digits, strong bool) excelize.Cell {
+func (b *book) cell(v any, d digits, strong, indent bool) excelize.Cell {
+	text := look{role: body, strong: strong, indent: indent, right: d != asText}
 	switch v := v.(type) {
 	case nil:
-		return excelize.Cell{StyleID: b.style(look{role: body, strong: strong})}
+		return excelize.Cell{StyleID: b.style(text)}
 	case string:
-		return excelize.Cell{StyleID: b.style(look{role: body, strong: strong}), Value: cellText(v)}
+		return excelize.Cell{StyleID: b.style(text), Value: cellText(v)}
 	case exposure.Verdict:
-		return excelize.Cell{StyleID: b.style(look{role: body, strong: strong || v == exposure.Above}), Value: verdictWords(v)}
+		text.strong = strong || v == exposure.Above
+		return excelize.Cell{StyleID: b.style(text), Value: verdictWords(v)}
 	case exposure.Number:
-		return b.cell(float64(v), d, strong)
+		return b.cell(float64(v), d, strong, indent)
 	case int:
-		return b.cell(float64(v), d, strong)
+		return b.cell(float64(v), d, strong, indent)
 	case calc:
-		c := b.cell(v.value, d, strong)
+		c := b.cell(v.value, d, strong, indent)
 		if _, ok := c.Value.(float64); ok {
 			c.Formula = v.formula
 		}
@@ -369,11 +399,17 @@ func (b *book) cell(v any, d digits, strong bool) excelize.Cell {
 			return excelize.Cell{}
 		}
 		if math.IsInf(v, 0) {
-			return excelize.Cell{StyleID: b.style(look{role: body, strong: strong, format: "@"}), Value: "no bound"}
+			text.right = true
+			return excelize.Cell{StyleID: b.style(text), Value: "no bound"}
 		}
 		return excelize.Cell{StyleID: b.style(look{role: body, strong: strong, format: d.numberFormat(v)}), Value: v}
 	}
 	panic(fmt.Sprintf("reports: no cell for a %T", v))
+}
+
+// plain is a cell of text outside a table.
+func (b *book) plain(text any, strong bool) excelize.Cell {
+	return b.cell(text, asText, strong, false)
 }
 
 // put streams one row of ready cells.

@@ -38,7 +38,7 @@ func (r *report) distances() {
 				{head: "elevation", unit: "deg", digits: tenths, what: "elevation of the ray above the horizon"},
 				{head: "distance", unit: "m", digits: cents, what: "outermost crossing of the boundary along the ray", method: "DIST-1"},
 				{head: "bracket", unit: "m", digits: cents, what: whatBracket, method: "DIST-1"},
-				{head: ""}, {head: ""}, {head: ""}, {head: "verdict"},
+				{head: ""}, {head: ""}, {head: ""}, {head: "nearer than that"},
 			})
 			for _, d := range rays {
 				s.line(subject(d), d.Class, d.AzimuthDeg, d.ElevationDeg, d.DistanceM, d.BracketM, nil, nil, nil,
@@ -69,7 +69,7 @@ func (r *report) reachTables(s *sheet, all []reach) {
 		for _, d := range set {
 			columns = append(columns, column{head: d, unit: "m", digits: cents, what: directionWords(d), method: "DIST-1"})
 		}
-		columns = append(columns, column{head: "bracket", unit: "m", digits: cents, what: whatBracket, method: "DIST-1"}, column{head: "verdict"})
+		columns = append(columns, column{head: "bracket", unit: "m", digits: cents, what: whatBracket, method: "DIST-1"}, column{head: "inside these extents"})
 		s.table(columns)
 		for _, x := range all {
 			if slices.Equal(x.direction, set) {
@@ -122,7 +122,7 @@ func (r *report) distancesByAntenna() {
 		columns = append(columns, column{head: d, unit: "m", width: 10, digits: cents, what: directionWords(d), method: "DIST-1"})
 	}
 	columns = append(columns, column{head: "bracket", unit: "m", width: 9, digits: cents, what: whatBracket, method: "DIST-1"},
-		column{head: "governed by", width: 24}, column{head: "verdict", width: 30})
+		column{head: "governed by", width: 24}, column{head: "inside these extents", width: 30})
 	r.write(page{
 		name: sheetByAntenna, title: "Keep-out distances by antenna row", landscape: true,
 		intro:  "Each row alone, as if nothing else radiated, measured from its own centre of radiation. Where several rows radiate together the boundary lies farther out: see " + sheetDistances + " and " + sheetBoundaries + ".",
@@ -201,9 +201,8 @@ func bodyWords(averaging string) string {
 // Room for a figure on a portrait page, in points. A row of a sheet is at most
 // 409 points high, so that a tall figure hangs over two rows.
 const (
-	figureWidth  = 505.0
+	figureWidth  = 488.0
 	figureHeight = 660.0
-	tallestRow   = 400.0
 )
 
 // figures puts each figure on a page of its own.
@@ -216,7 +215,7 @@ func (r *report) figures() {
 	r.write(page{
 		name: sheetFigures, title: "Figures", free: true,
 		intro:  "The same figures are beside this workbook as SVG and PNG. Classes are told apart by line style and hatching.",
-		widths: []float64{46, 46},
+		widths: []float64{41, 41},
 		before: func(f *excelize.File, sheet string) error {
 			for i, p := range r.pictures {
 				// The writer takes an image as 96 pixels to the inch; ours has more.

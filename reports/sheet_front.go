@@ -15,7 +15,7 @@ func (r *report) cautions() {
 		widths: []float64{5, 90},
 	}, func(s *sheet) {
 		item := func(mark, text string) {
-			s.put([]any{r.cell(mark, asText, false), r.cell(text, asText, false)}, textHeight(text, 86, 12.5)+4)
+			s.put([]any{r.plain(mark, false), r.plain(text, false)}, textHeight(text, 90, bodyLine)+5)
 		}
 		for i, text := range Cautions {
 			item(fmt.Sprint(i+1), text)
@@ -85,7 +85,7 @@ func (r *report) result() {
 	a, f := r.a, r.found
 	r.write(page{
 		name: sheetResult, title: "Result: " + oneLine(a.SiteName), intro: r.resultIntro(),
-		widths: []float64{26, 15, 11, 11, 11, 11, 11, 34}, onePage: true, landscape: true,
+		widths: []float64{21, 15, 10, 9, 9, 10, 10, 24}, onePage: true,
 	}, func(s *sheet) {
 		s.section(fmt.Sprintf("What is above: %d of %s above the limits supplied, for the class that may be there", len(f.above), count(f.places, "place")))
 		if len(f.above) > 0 {
@@ -204,7 +204,7 @@ func (r *report) resultReaches(s *sheet) {
 		{head: "up", unit: "m", digits: cents, what: "extent of the boundary upward", method: "DIST-1"},
 		{head: "down", unit: "m", digits: cents, what: "extent of the boundary downward", method: "DIST-1"},
 		{head: "bracket", unit: "m", digits: cents, what: "the boundary lies at most this much nearer than the distance", method: "DIST-1"},
-		{head: "verdict"},
+		{head: "inside these extents"},
 	})
 	for i, x := range kept {
 		if i == 2*mostOnResult {
@@ -215,7 +215,7 @@ func (r *report) resultReaches(s *sheet) {
 		up, _ := x.along("up")
 		down, _ := x.along("down")
 		if x.verdict == exposure.Within {
-			s.line(x.subject, x.class, "none", nil, "none", "none", nil, verdictWords(x.verdict))
+			s.line(x.subject, x.class, "none", nil, "none", "none", nil, reachWords(x))
 			continue
 		}
 		s.line(x.subject, x.class, m, direction, up, down, x.bracket, reachWords(x))
@@ -225,8 +225,8 @@ func (r *report) resultReaches(s *sheet) {
 // reachWords says what an extent's verdict means: "above" is true nearby, of
 // every transmitting antenna.
 func reachWords(x reach) string {
-	if x.verdict == exposure.Above {
-		return "above the limits supplied inside these extents"
+	if x.verdict == exposure.Within {
+		return verdictWords(x.verdict) + " everywhere"
 	}
 	return verdictFull(x.verdict, x.reason)
 }
@@ -264,7 +264,7 @@ func (r *report) signOff() {
 		widths: []float64{30, 12, 48},
 	}, func(s *sheet) {
 		blank := func(label string, height float64) {
-			s.put([]any{r.cell(label, asText, true), styled(r, field), styled(r, field)}, height)
+			s.put([]any{r.plain(label, true), styled(r, field), styled(r, field)}, height)
 			s.keepMerged(2, 3)
 		}
 		for _, who := range []string{"Prepared by", "Licensed assessor", "For the site's owner"} {
@@ -279,7 +279,7 @@ func (r *report) signOff() {
 			if name == sheetSignOff {
 				continue
 			}
-			s.put([]any{r.cell(name, asText, false), styled(r, field), styled(r, field)}, 26)
+			s.put([]any{r.plain(name, false), styled(r, field), styled(r, field)}, 22)
 		}
 	})
 }

@@ -16,27 +16,36 @@ var methodColumns = []column{
 }
 
 var columnColumns = []column{
-	{head: "sheet"}, {head: "column"}, {head: "what it is"}, {head: ""}, {head: ""}, {head: "method"},
+	{head: "sheet", width: 22}, {head: "column", width: 28}, {head: "what it is", width: 78}, {head: "method", width: 20},
 }
 
-// methods writes every method and what every numeric column of the workbook is.
-// It is written after all other sheets, whose columns it explains.
+// methods writes every method with its formula, range and source.
 func (r *report) methods() {
 	notes := exposure.Methods()
 	r.write(page{
 		name: sheetMethods, title: "Methods and sources", landscape: true,
-		intro:  "Published methods, and choices of this program, which are marked \"own choice\". The second table says what every column of figures in this workbook is.",
+		intro:  "Published methods, and choices of this program, which are marked \"own choice\". Sheet " + sheetColumns + " says which column of figures rests on which.",
 		widths: widthsOf(methodColumns), headRow: firstRow,
 	}, func(s *sheet) {
 		s.table(methodColumns)
 		for _, n := range notes {
 			source := n.Source
 			if n.Ours {
-				source = "own choice: " + source
+				source = "own choice: " + strings.TrimPrefix(source, "a choice of this project: ")
 			}
 			s.line(n.ID, n.Name, n.Formula, n.Range, n.Errs, source)
 		}
-		s.section("What each column of figures is")
+	})
+}
+
+// columnMethods writes what every numeric column of the workbook is. It is
+// written after all other sheets, whose columns it explains.
+func (r *report) columnMethods() {
+	r.write(page{
+		name: sheetColumns, title: "Methods by column", landscape: true,
+		intro:  "What every column of figures in this workbook is, and the row of sheet " + sheetMethods + " that it rests on.",
+		widths: widthsOf(columnColumns), headRow: firstRow,
+	}, func(s *sheet) {
 		s.table(columnColumns)
 		type key struct{ sheet, header string }
 		done := map[key]bool{}
@@ -51,9 +60,7 @@ func (r *report) methods() {
 				if method == "" {
 					method = "as typed or counted"
 				}
-				s.put([]any{r.cell(e.sheet, asText, false), r.cell(e.header(), asText, false), r.cell(e.what, asText, false), r.cell(nil, asText, false), r.cell(nil, asText, false), r.cell(method, asText, false)},
-					textHeight(e.what, 86, 12.5)+2)
-				s.keepMerged(3, 5)
+				s.line(e.sheet, e.header(), e.what, method)
 			}
 		}
 	})

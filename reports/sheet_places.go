@@ -18,7 +18,7 @@ var placeColumns = []column{
 	{head: "H", unit: "A/m", width: 8, digits: figures, what: "magnetic field strength, root-sum-square over the sources", method: "WAVE-2"},
 	{head: "S", unit: "W/m2", width: 8, digits: figures, what: "power density: the sum over sources of the larger of E2/Z0 and Z0 H2", method: "WAVE-2"},
 	{head: "exposure ratio", unit: "1", width: 9, digits: figures, what: "total exposure ratio of the covered sources for the class; above 1 is above the limits supplied", method: "RATIO-1"},
-	{head: "verdict", width: 31}, {head: "governed by", width: 18}, {head: "verdict changes at ground factors", width: 11},
+	{head: "verdict", width: 30}, {head: "governed by", width: 21}, {head: "verdict changes at ground factors", width: 11},
 }
 
 // places writes the verdict on every place for every class.
@@ -137,7 +137,7 @@ func (r *report) profiles() {
 		},
 	}, func(s *sheet) {
 		for range charts {
-			s.put([]any{r.cell(nil, asText, false)}, chartHeight)
+			s.put([]any{excelize.Cell{}}, chartHeight)
 		}
 		s.table(columns)
 		for _, p := range r.a.Profiles {
@@ -197,7 +197,7 @@ func ratioChart(class string, series []excelize.ChartSeries, a *exposure.Assessm
 			Title: excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: text, Font: &excelize.Font{Family: fontName, Size: 9, Color: ink}}}},
 		}
 	}
-	x, y := axis("distance from the centre of radiation [m]"), axis("exposure ratio of the row alone [1]")
+	x, y := axis("distance from the centre of radiation [m]"), axis("ratio [1]")
 	x.Minimum, x.Maximum = ptr(decadeBelow(least)), ptr(decadeAbove(most))
 	y.LogBase = 10
 	y.Minimum = ptr(1e-4)
@@ -207,7 +207,7 @@ func ratioChart(class string, series []excelize.ChartSeries, a *exposure.Assessm
 		Type: excelize.Scatter, Series: series, XAxis: x, YAxis: y,
 		Title:     excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: "Exposure ratio along the main beam, class " + oneLine(class), Font: &excelize.Font{Family: fontName, Size: 11, Bold: true, Color: ink}}}},
 		Legend:    excelize.ChartLegend{Position: "right", Font: &excelize.Font{Family: fontName, Size: 9, Color: ink}},
-		Dimension: excelize.ChartDimension{Width: 690, Height: 515},
+		Dimension: excelize.ChartDimension{Width: 760, Height: 515},
 		Format:    excelize.GraphicOptions{AltText: "Exposure ratio against distance, class " + oneLine(class), Positioning: "oneCell"},
 	}
 }

@@ -33,7 +33,7 @@ func (r *report) site() {
 			if value == "" {
 				value = "not stated"
 			}
-			s.put([]any{r.cell(name, asText, true), r.cell(value, asText, false)}, textHeight(value, 84, 12.5))
+			s.put([]any{r.plain(name, true), r.plain(value, false)}, textHeight(value, 84, bodyLine))
 			s.keepMerged(2, len(s.page.widths))
 		}
 		item("name", about.Name)

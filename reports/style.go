@@ -41,6 +41,8 @@ func (d digits) numberFormat(v float64) string {
 		return "0.0E+00"
 	case a < 1:
 		return "0.000"
+	case a > 1 && a < 1.01:
+		return "0.0000" // above, and must look so
 	case a < 10:
 		return "0.00"
 	case a < 100:
@@ -54,6 +56,8 @@ func (d digits) numberFormat(v float64) string {
 type look struct {
 	role   role
 	strong bool
+	indent bool   // set off from the numbers to its left
+	right  bool   // a word in a column of numbers
 	format string // number format, "" = text
 }
 
@@ -120,6 +124,13 @@ func (b *book) style(l look) int {
 		for _, side := range []string{"left", "right", "top", "bottom"} {
 			s.Border = append(s.Border, excelize.Border{Type: side, Color: "7F7F7F", Style: thin})
 		}
+	}
+	if l.indent {
+		s.Alignment.Indent = 1
+		s.Alignment.Horizontal = "left"
+	}
+	if l.right {
+		s.Alignment.Horizontal = "right"
 	}
 	if l.format != "" {
 		if l.format != "General" {

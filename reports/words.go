@@ -55,6 +55,9 @@ func ratioText(n exposure.Number) string {
 	case v < 0.001:
 		return "below 0.001"
 	}
+	if v > 1 && v < 1.01 {
+		return significant(v, 5) // above, and must look so
+	}
 	return significant(v, 3)
 }
 

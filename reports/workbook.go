@@ -25,6 +25,7 @@ const (
 	sheetContributions = "Contributions"
 	sheetProfiles      = "Along the beams"
 	sheetMethods       = "Methods"
+	sheetColumns       = "Methods by column"
 	sheetInputs        = "Inputs"
 	sheetSignOff       = "Sign-off"
 )
@@ -47,7 +48,7 @@ func workbook(a *exposure.Assessment, pictures []picture) ([]byte, error) {
 	for _, write := range r.writers {
 		write()
 	}
-	r.methods()
+	r.columnMethods()
 	b.keep(f.SetCalcProps(&excelize.CalcPropsOptions{FullCalcOnLoad: ptr(true)}))
 	b.properties()
 	f.SetActiveSheet(0)
@@ -114,7 +115,8 @@ func newReport(b *book, pictures []picture) *report {
 	if len(b.a.Profiles) > 0 {
 		add(sheetProfiles, r.profiles)
 	}
-	r.order = append(r.order, sheetMethods) // written last: it explains the columns of all others
+	add(sheetMethods, r.methods)
+	r.order = append(r.order, sheetColumns) // written last: it explains the columns of all others
 	add(sheetInputs, r.inputFiles)
 	for _, in := range r.inputs {
 		add(in.name, func() { r.inputTable(in) })
