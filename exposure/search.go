@@ -174,11 +174,28 @@ func (s *search) visit(n *node) {
 		s.emit(&c)
 		return
 	}
+	before := len(s.leaves)
 	half := int32(1) << (n.level - 1)
 	for k := int32(0); k < 4; k++ {
 		child := node{x: n.x + half*(k&1), y: n.y + half*(k>>1), level: n.level - 1, inside: n.inside, edges: n.edges, slabs: open}
 		s.visit(&child)
 	}
+	s.merge(n, before)
+}
+
+// merge replaces the four leaves of a square's children by one where they are
+// alike, so that the trace has fewer sides to cancel.
+func (s *search) merge(n *node, before int) {
+	l := s.leaves[before:]
+	if len(l) != 4 {
+		return
+	}
+	for i := range l {
+		if l[i].level != n.level-1 || l[i].kind != l[0].kind || l[i].clip {
+			return
+		}
+	}
+	s.leaves = append(s.leaves[:before], leaf{n.x, n.y, n.level, l[0].kind, false})
 }
 
 // place narrows the outline's edges to those that touch the square and reports
@@ -328,6 +345,11 @@ func (s *search) largest(n *node) (open []slab, done bool) {
 					next := s.freeze(b, &sl, side, hi-lo)
 					mid := (sl.lo + sl.hi) / 2
 					tlo, thi := s.bound(plan.heights(mid, mid), &next)
+					if tlo > s.e.share && method == reached {
+						// One height at which the whole square is above is enough.
+						s.leave(n, innerToo)
+						return nil, true
+					}
 					split = thi-tlo < 0.6*(hi-lo)
 					sl = next
 				} else if !split {

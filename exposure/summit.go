@@ -33,8 +33,12 @@ func (h *peakHeap) Pop() any {
 	return x
 }
 
-// summitGap is the relative gap at which the search for the largest ratio ends.
-const summitGap = 1e-3
+// The search for the largest ratio ends at this relative gap, or after this many
+// boxes with the gap it has.
+const (
+	summitGap   = 1e-2
+	summitBoxes = 20000
+)
 
 // largestOver finds the largest ratio over the body volume of a plane, best
 // bound first (branch and bound), to within summitGap or, at a source's own
@@ -73,14 +77,14 @@ func (e *evaluator) largestOver(ctx context.Context, p *plane) summit {
 	}
 	consider(first)
 	s.reach = e.touchesReactive(p, first, inside)
-	for len(h) > 0 && ctx.Err() == nil {
+	for boxes := 0; len(h) > 0 && ctx.Err() == nil; boxes++ {
 		top := h[0]
 		s.upper = math.Max(top.upper, s.lower)
 		if top.upper <= s.lower*(1+summitGap) {
 			return s
 		}
 		small := top.b.h.X <= p.step/2 && top.b.h.Z <= p.step/2
-		if small {
+		if small || boxes > summitBoxes {
 			// Beside a source's centre the bound never closes: say so.
 			return s
 		}

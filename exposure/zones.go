@@ -236,7 +236,7 @@ func zoneVerdict(z *Zone, r *rule, top summit) (Verdict, string) {
 	case top.reach != reached:
 		return NotAssessed, "part of it lies in the reactive region of an antenna: measure there"
 	case top.upper > z.Share:
-		return Above, "the largest ratio is at the limit to within the search's 0.1 %"
+		return Above, "the largest ratio is at the limit to within the search's 1 %"
 	}
 	return Within, ""
 }
