@@ -70,7 +70,7 @@ func TestSpotFaults(t *testing.T) {
 	}{
 		"within half a digit":   {spot("public", limits.S, 850, 5.7, 0.05), ""},
 		"on the half digit":     {spot("public", limits.S, 150, 2.5, 0.5), ""},
-		"beyond half a digit":   {spot("public", limits.S, 850, 5.68, 0.005), "5.667 W/m2 in row 6 (300 MHz to 1.5 GHz)"},
+		"beyond half a digit":   {spot("public", limits.S, 850, 5.673, 0.005), "5.667 W/m2 in row 6 (300 MHz to 1.5 GHz)"},
 		"a step of another row": {spot("public", limits.S, 850, 2, 0.5), "5.667 W/m2"},
 		"no such class":         {spot("workers", limits.S, 850, 5.67, 0.005), `no S level for "workers" at 850 MHz`},
 		"no such quantity":      {spot("public", limits.E, 850, 5.67, 0.005), `no E level`},
@@ -154,4 +154,5 @@ func TestWarnings(t *testing.T) {
 	require.Len(t, list, 1)
 	assert.Contains(t, list[0], "no row between 300 MHz and 301 MHz: an antenna there is not assessed")
 	assert.Empty(t, messages(flat("public", limits.S, 100, 300, 2), flat("public", limits.E, 300, 400, 28)), "another quantity fills it")
+	assert.Empty(t, messages(flat("public", limits.E, 100, 400, 28), flat("public", limits.S, 150, 200, 2), flat("public", limits.S, 300, 500, 2)), "a narrow band within a wide one ends nothing")
 }
