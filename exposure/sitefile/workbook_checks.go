@@ -2,6 +2,7 @@ package sitefile
 
 import (
 	"fmt"
+	"math"
 	"strconv"
 	"strings"
 
@@ -159,17 +160,23 @@ func (b *workbookBuilder) layout(p sheetPlan, header int) {
 	for _, c := range p.columns {
 		width += c.width
 	}
-	orientation, page := "portrait", 95.0 // characters on a page that can still be read
-	if width > page {
-		orientation, page = "landscape", 150
-	}
-	pages := int(width/page) + 1
-	b.do(b.book.SetPageLayout(p.name, &excelize.PageLayoutOptions{Size: new(9), Orientation: &orientation,
-		FitToWidth: new(pages), FitToHeight: new(0), PageOrder: new("overThenDown")}))
-	b.do(b.book.SetSheetProps(p.name, &excelize.SheetPropsOptions{FitToPage: new(true)}))
-	b.do(b.book.SetHeaderFooter(p.name, &excelize.HeaderFooterOptions{OddHeader: "&L&A", OddFooter: "&L&F&RPage &P of &N"}))
+	b.page(p.name, width)
 	b.do(b.book.SetDefinedName(&excelize.DefinedName{Name: "_xlnm.Print_Titles", Scope: p.name,
 		RefersTo: fmt.Sprintf("'%s'!$A:$A,'%s'!$%d:$%d", p.name, p.name, header, header)}))
+}
+
+// page sets up the print of a sheet that is width characters wide: upright where
+// that fits, else across, on as many pages as it takes to be read.
+func (b *workbookBuilder) page(sheet string, width float64) {
+	const upright, across = 105, 185 // characters of a line on A4 that can still be read
+	orientation, pages := "portrait", 1
+	if width > upright {
+		orientation, pages = "landscape", int(math.Ceil(width/across))
+	}
+	b.do(b.book.SetPageLayout(sheet, &excelize.PageLayoutOptions{Size: new(9), Orientation: &orientation,
+		FitToWidth: &pages, FitToHeight: new(0), PageOrder: new("overThenDown")}))
+	b.do(b.book.SetSheetProps(sheet, &excelize.SheetPropsOptions{FitToPage: new(true)}))
+	b.do(b.book.SetHeaderFooter(sheet, &excelize.HeaderFooterOptions{OddHeader: "&L&A", OddFooter: "&L&F&RPage &P of &N"}))
 }
 
 // truncate cuts a text at n characters.

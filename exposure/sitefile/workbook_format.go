@@ -12,13 +12,19 @@ import (
 )
 
 // numberFormat is what a cell style makes of a stored number.
-type numberFormat int
+type numberFormat struct {
+	kind     formatKind
+	decimals int // shown after the point, where the style fixes them
+}
+
+type formatKind int
 
 const (
-	plainNumber  numberFormat = iota
-	dateNumber                // days since the workbook's epoch
-	timeNumber                // share of a day
-	percentShown              // shown a hundred times what is stored
+	plainNumber  formatKind = iota
+	fixedNumber             // with a fixed number of decimals
+	dateNumber              // days since the workbook's epoch
+	timeNumber              // share of a day
+	percentShown            // shown a hundred times what is stored
 )
 
 // styles returns the number format of each cell style of the workbook.
@@ -58,14 +64,18 @@ func (p packageParts) styles(name string) ([]numberFormat, error) {
 // in East Asian programs.
 func builtInFormat(id int) numberFormat {
 	switch {
+	case id == 1 || id == 3:
+		return numberFormat{kind: fixedNumber}
+	case id == 2 || id == 4:
+		return numberFormat{fixedNumber, 2}
 	case id == 9 || id == 10:
-		return percentShown
+		return numberFormat{kind: percentShown}
 	case id >= 14 && id <= 17, id == 22, id >= 27 && id <= 31, id == 36, id >= 50 && id <= 54, id == 57, id == 58:
-		return dateNumber
+		return numberFormat{kind: dateNumber}
 	case id >= 18 && id <= 21, id >= 32 && id <= 35, id >= 45 && id <= 47, id == 55, id == 56:
-		return timeNumber
+		return numberFormat{kind: timeNumber}
 	}
-	return plainNumber
+	return numberFormat{}
 }
 
 // formatOf reads a number format code: the letters y, m, d, h, s outside quotes,
@@ -95,17 +105,20 @@ func formatOf(code string) numberFormat {
 		}
 	}
 	s := letters.String()
+	if whole, decimals, _ := strings.Cut(s, "."); strings.TrimLeft(whole, "#,") == "0" && strings.Trim(decimals, "0") == "" {
+		return numberFormat{fixedNumber, len(decimals)}
+	}
 	switch {
 	case strings.Contains(s, "general"):
-		return plainNumber
+		return numberFormat{}
 	case strings.ContainsAny(s, "yd"), strings.Contains(s, "m") && !strings.ContainsAny(s, "hs"):
-		return dateNumber
+		return numberFormat{kind: dateNumber}
 	case strings.ContainsAny(s, "hms"):
-		return timeNumber
+		return numberFormat{kind: timeNumber}
 	case strings.Contains(s, "%"):
-		return percentShown
+		return numberFormat{kind: percentShown}
 	}
-	return plainNumber
+	return numberFormat{}
 }
 
 // numberText writes a stored number as one would type it: the shortest digits
@@ -117,15 +130,27 @@ func numberText(v float64) string {
 	return strconv.FormatFloat(v, 'f', -1, 64)
 }
 
+// shown writes a stored number with the decimals that the style fixes, where
+// they say the same: 0.3 under the style 0.00 was typed, and is seen, as 0.30.
+func (f numberFormat) shown(v float64) string {
+	if f.kind == fixedNumber {
+		text := strconv.FormatFloat(v, 'f', f.decimals, 64)
+		if w, err := strconv.ParseFloat(text, 64); err == nil && w == v {
+			return text
+		}
+	}
+	return numberText(v)
+}
+
 // dateText writes a day number as an ISO 8601 date, with the time where it has one.
-func dateText(v float64, format numberFormat, date1904 bool) (string, error) {
+func dateText(v float64, kind formatKind, date1904 bool) (string, error) {
 	t, err := excelize.ExcelDateToTime(v, date1904)
 	if err != nil {
 		return "", fmt.Errorf("a date of day number %s", numberText(v))
 	}
 	t = t.Round(time.Second)
 	switch clock := t.Format("15:04:05"); {
-	case format == timeNumber && v >= 0 && v < 1:
+	case kind == timeNumber && v >= 0 && v < 1:
 		return clock, nil
 	case clock == "00:00:00":
 		return t.Format(time.DateOnly), nil

@@ -16,7 +16,7 @@ const roomRows = 2000
 
 // writeFillIn writes the workbook to be filled in: one sheet a table.
 func writeFillIn(w io.Writer) error {
-	plans := []sheetPlan{guidePlan()}
+	var plans []sheetPlan
 	for _, t := range Schema() {
 		plans = append(plans, fillInPlan(t))
 	}
@@ -26,7 +26,7 @@ func writeFillIn(w io.Writer) error {
 // writeGrids writes tables that were read from CSV files as one workbook, which
 // can be filled in further.
 func writeGrids(w io.Writer, grids []*grid) error {
-	plans := []sheetPlan{guidePlan()}
+	var plans []sheetPlan
 	for _, g := range grids {
 		t := tableSchema(g.table)
 		if t == nil {
@@ -66,9 +66,12 @@ func fillInPlan(t TableSchema) sheetPlan {
 	return p
 }
 
-// rank puts the rare columns behind the others.
+// rank puts the rare columns behind the others, and the note last.
 func rank(c ColumnSchema) int {
-	if c.Rare {
+	switch {
+	case c.Name == "note":
+		return 2
+	case c.Rare:
 		return 1
 	}
 	return 0
@@ -151,14 +154,12 @@ func limitsPlans(g *grid) []sheetPlan {
 // headerPlan finds the column that a header names; one that the schema does not
 // know is text. The range holds only in the schema's own unit.
 func headerPlan(t TableSchema, header string) columnPlan {
-	name, unit, _ := strings.Cut(header, "[")
-	unit = strings.TrimSuffix(strings.TrimSpace(unit), "]")
-	c, ok := t.Column(strings.ToLower(strings.TrimSpace(name)))
-	if !ok {
-		for _, one := range t.Columns {
-			if strings.EqualFold(one.Name, strings.TrimSpace(name)) {
-				c, ok = one, true
-			}
+	name, unit, _ := splitHeader(header)
+	var c ColumnSchema
+	ok := false
+	for _, one := range t.Columns {
+		if strings.EqualFold(one.Name, name) {
+			c, ok = one, true
 		}
 	}
 	if !ok {
@@ -256,22 +257,9 @@ func noteOf(c ColumnSchema) string {
 // a heading of the limit table.
 func guideLine(t TableSchema) string {
 	help, _, _ := strings.Cut(t.Help, ";")
-	return strings.ReplaceAll(help, ":", ",") + ". Dark headers must be filled. Rows that begin with # are not read. Help at each header"
-}
-
-// guidePlan is the first sheet, which says how the others are used.
-func guidePlan() sheetPlan {
-	p := sheetPlan{name: sheetGuide, columns: []columnPlan{{header: "How to fill in this workbook", width: 24}, {width: 72}}}
-	add := func(left, right string) { p.rows = append(p.rows, rowPlan{cells: []string{left, right}}) }
-	add("Sheets", "One sheet is one table. Leave a table that you do not need as it is; site, antennas and limits are the least there must be.")
-	add("Headers", "A header is a name and, in brackets, the unit of the figures under it. Dark headers must be filled, light ones have a default. Point at a header to read its note.")
-	add("Other units", "Unprotect the sheet (there is no password), write another unit into the brackets, such as power [dBm] or z [ft], and type the figures in that unit.")
-	add("Rows", "A row that begins with # is not read: so is the grey example. Hidden and filtered rows are read. Do not merge cells.")
-	add("Figures", "Type figures without their unit. Do not format a cell as a percentage or as a date unless the header asks for it. A formula may stand for a figure; save in a spreadsheet program so that its value is stored.")
-	add("Own remarks", "A column named note, or whose name begins with note, is kept and printed and never interpreted.")
-	add("Saving", "Save as .xlsx, without a password and without macros.")
-	for _, t := range Schema() {
-		add(t.Name, t.Help+".")
+	help, _, _ = strings.Cut(help, ":")
+	if t.Vertical {
+		return help
 	}
-	return p
+	return help + ". Rows that begin with # are not read"
 }

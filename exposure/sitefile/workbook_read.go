@@ -18,36 +18,35 @@ const (
 	sheetGuide   = "how to fill in"
 )
 
-// readWorkbook makes grids of the sheets of a workbook that bear the names of
-// tables, in the order of the workbook. file is the name that faults give.
-func readWorkbook(file string, data []byte) ([]*grid, Faults) {
+// readWorkbook makes grids of the sheets of a workbook that bear the known names
+// of tables, in the order of the workbook. file is the name that faults give. The
+// warnings are of sheets that are no table.
+func readWorkbook(file string, data []byte, known []string) ([]*grid, Faults, []exposure.Warning) {
 	scan, refused := verifyWorkbook(file, data)
 	if refused != nil {
-		return nil, Faults{*refused}
+		return nil, Faults{*refused}, nil
 	}
 	f, err := excelize.OpenReader(bytes.NewReader(data), excelize.Options{RawCellValue: true,
 		UnzipSizeLimit: workbookMaxUnpacked, UnzipXMLSizeLimit: workbookMaxUnpacked})
 	if err != nil {
-		return nil, Faults{{File: file, Message: damaged("%v", err).Error()}}
+		return nil, Faults{{File: file, Message: damaged("%v", err).Error()}}, nil
 	}
 	defer f.Close()
-	r := &workbookReader{file: file, scan: scan, book: f, byTable: map[string]*grid{}}
+	r := &workbookReader{file: file, scan: scan, book: f, known: known, byTable: map[string]*grid{}}
 	for i := range scan.sheets {
 		r.sheet(&scan.sheets[i])
 	}
 	if len(r.grids) == 0 && len(r.faults) == 0 {
-		return nil, Faults{{File: file, Message: "no sheet bears the name of a table; the sheets are named " + strings.Join(tableNames(), ", ")}}
+		return nil, Faults{{File: file, Message: "no sheet bears the name of a table; the sheets are named " + strings.Join(known, ", ")}}, nil
 	}
-	if len(r.grids) > 0 {
-		r.grids[0].warnings = append(r.warnings, r.grids[0].warnings...)
-	}
-	return r.grids, r.faults
+	return r.grids, r.faults, r.warnings
 }
 
 type workbookReader struct {
 	file     string
 	scan     *workbookScan
 	book     *excelize.File
+	known    []string
 	grids    []*grid
 	byTable  map[string]*grid
 	faults   Faults
@@ -64,10 +63,10 @@ func (r *workbookReader) sheet(s *sheetScan) {
 	if table == sheetChoices || table == sheetGuide {
 		return
 	}
-	if tableSchema(table) == nil {
+	if !slices.Contains(r.known, table) {
 		if s.filled() {
 			r.warnings = append(r.warnings, exposure.Warning{Place: place,
-				Message: fmt.Sprintf("no table is named %q, so the sheet is not read%s", s.name, near(table))})
+				Message: fmt.Sprintf("no table is named %q, so the sheet is not read%s", s.name, didYouMean(table, r.known))})
 		}
 		return
 	}
@@ -155,7 +154,7 @@ func (r *workbookReader) cells(s *sheetScan) (*grid, Faults, error) {
 			if fault != "" {
 				found = append(found, cellFault{row, c.column - 1, fault, c.kind == "e" && c.column == 1})
 			}
-			if isNumber(c) && r.format(c) == percentShown {
+			if isNumber(c) && r.format(c).kind == percentShown {
 				percent = append(percent, cellFault{row, c.column - 1, fmt.Sprintf(
 					"%s is formatted as a percentage, so that %s is stored and %s %% shown; format the cell as a number and type the number in the unit of the header",
 					cellName(c.column, scanned.number), text, hundredfold(text)), false})
@@ -191,7 +190,7 @@ func (r *workbookReader) format(c cellScan) numberFormat {
 	if c.style < len(r.scan.formats) {
 		return r.scan.formats[c.style]
 	}
-	return plainNumber
+	return numberFormat{}
 }
 
 // cell returns the text of a cell as one would type it, the fault it has, or an
@@ -238,14 +237,15 @@ func (r *workbookReader) cell(c cellScan, got string) (text, fault string, err e
 	if w, err := units.ParseNumber(got, false); err != nil || w != v {
 		return "", "", differs
 	}
-	if f := r.format(c); f == dateNumber || f == timeNumber {
-		text, err := dateText(v, f, r.scan.date1904)
+	f := r.format(c)
+	if f.kind == dateNumber || f.kind == timeNumber {
+		text, err := dateText(v, f.kind, r.scan.date1904)
 		if err != nil {
 			return numberText(v), err.Error() + " does not exist; type the date as 2026-03-31", nil
 		}
 		return text, "", nil
 	}
-	return numberText(v), "", nil
+	return f.shown(v), "", nil
 }
 
 // hundredfold writes what a percentage format shows of a stored number.
@@ -313,12 +313,4 @@ func count(n int, one, many string) string {
 		return "1 " + one
 	}
 	return fmt.Sprintf("%d %s", n, many)
-}
-
-// near suggests the table that a sheet's name was most likely meant to be.
-func near(name string) string {
-	if n := units.NearName(name, tableNames()); n != "" {
-		return fmt.Sprintf("; is it %s?", n)
-	}
-	return ""
 }

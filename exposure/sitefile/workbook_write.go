@@ -57,13 +57,14 @@ const (
 	dateCell                   // a date where it is an ISO date, else text
 )
 
-// writeWorkbook writes sheets as one workbook, with the same bytes for the same
-// sheets. Text is never a formula, whatever it begins with.
+// writeWorkbook writes sheets as one workbook behind a sheet of advice, with the
+// same bytes for the same sheets. Text is never a formula, whatever it begins with.
 func writeWorkbook(w io.Writer, plans []sheetPlan) error {
 	f := excelize.NewFile()
 	defer f.Close()
 	b := &workbookBuilder{book: f}
 	b.styles()
+	b.guide(plans)
 	for _, p := range plans {
 		b.sheet(p)
 	}
@@ -96,40 +97,45 @@ func (b *workbookBuilder) do(err error) {
 func (b *workbookBuilder) styles() {
 	b.style = map[string]int{}
 	border := []excelize.Border{{Type: "bottom", Color: "8C8C8C", Style: 1}, {Type: "right", Color: "C8C8C8", Style: 1}}
-	head := func(bold bool, fill string) *excelize.Style {
+	head := func(bold bool, fill, horizontal string) *excelize.Style {
 		return &excelize.Style{Font: &excelize.Font{Bold: bold, Family: "Arial", Size: 10}, Border: border,
 			Fill:       excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{fill}},
-			Alignment:  &excelize.Alignment{WrapText: true, Vertical: "top"},
+			Alignment:  &excelize.Alignment{WrapText: true, Vertical: "top", Horizontal: horizontal},
 			Protection: &excelize.Protection{Locked: true}}
 	}
-	body := func(format string, horizontal string) *excelize.Style {
-		s := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10},
+	grey := func(horizontal string) *excelize.Style {
+		return &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10, Color: "7A7A7A", Italic: true},
 			Alignment: &excelize.Alignment{Vertical: "top", Horizontal: horizontal}, Protection: &excelize.Protection{Locked: false}}
-		if format != "" {
-			s.CustomNumFmt = &format
-		}
-		return s
-	}
-	grey := func(italic bool) *excelize.Style {
-		return &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10, Color: "7A7A7A", Italic: italic},
-			Alignment: &excelize.Alignment{Vertical: "top"}, Protection: &excelize.Protection{Locked: false}}
 	}
 	title := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 14, Bold: true}, Protection: &excelize.Protection{Locked: true}}
 	prose := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10}, Protection: &excelize.Protection{Locked: true},
 		Alignment: &excelize.Alignment{WrapText: true, Vertical: "top"}}
+	term := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10, Bold: true}, Protection: &excelize.Protection{Locked: true},
+		Alignment: &excelize.Alignment{Vertical: "top"}}
 	// In a fixed order: the numbers of the styles stand in the file.
 	for _, one := range []struct {
 		name  string
 		style *excelize.Style
 	}{
-		{"required", head(true, "D2D2D2")}, {"optional", head(false, "EFEFEF")},
-		{"text", body("@", "left")}, {"number", body("", "right")}, {"date", body("yyyy-mm-dd", "left")},
-		{"example", grey(true)}, {"title", title}, {"prose", prose},
+		{"required", head(true, "D2D2D2", "left")}, {"optional", head(false, "EFEFEF", "left")},
+		{"required number", head(true, "D2D2D2", "right")}, {"optional number", head(false, "EFEFEF", "right")},
+		{"text", bodyStyle("@", "left")}, {"number", bodyStyle("", "right")}, {"date", bodyStyle("yyyy-mm-dd", "left")},
+		{"example", grey("left")}, {"example number", grey("right")}, {"title", title}, {"prose", prose}, {"term", term},
 	} {
 		id, err := b.book.NewStyle(one.style)
 		b.do(err)
 		b.style[one.name] = id
 	}
+}
+
+// bodyStyle is the look of a cell to be filled in.
+func bodyStyle(format, horizontal string) *excelize.Style {
+	s := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10},
+		Alignment: &excelize.Alignment{Vertical: "top", Horizontal: horizontal}, Protection: &excelize.Protection{Locked: false}}
+	if format != "" {
+		s.CustomNumFmt = &format
+	}
+	return s
 }
 
 func (k cellKind) style() string { return [...]string{"text", "number", "date"}[k] }
@@ -147,13 +153,11 @@ func (b *workbookBuilder) sheet(p sheetPlan) {
 	if last := len(p.columns); last < 256 {
 		b.do(b.book.SetColStyle(p.name, columnLetters(last+1)+":"+columnLetters(256), b.style["text"]))
 	}
-	if p.guide != "" {
-		for i := range p.columns {
-			b.do(b.book.SetCellStyle(p.name, cellName(i+1, row), cellName(i+1, row), b.style["example"]))
-		}
-		b.text(p.name, 1, row, "# "+p.guide)
-		row++
-	}
+	// The first cell of the line is repeated on every page; the text is not.
+	b.text(p.name, 1, row, "#")
+	b.text(p.name, 2, row, p.guide)
+	b.do(b.book.SetCellStyle(p.name, "A1", cellName(len(p.columns), row), b.style["example"]))
+	row++
 	header := row
 	for i, c := range p.columns {
 		b.text(p.name, i+1, row, c.header)
@@ -161,10 +165,13 @@ func (b *workbookBuilder) sheet(p sheetPlan) {
 		if c.required {
 			look = "required"
 		}
+		if c.kind == numberCell {
+			look += " number"
+		}
 		b.do(b.book.SetCellStyle(p.name, cellName(i+1, row), cellName(i+1, row), b.style[look]))
 		b.note(p.name, cellName(i+1, row), c.note)
 	}
-	b.do(b.book.SetRowHeight(p.name, row, 40))
+	b.do(b.book.SetRowHeight(p.name, row, headerHeight(p.columns)))
 	for _, r := range p.rows {
 		row++
 		for i, text := range r.cells {
@@ -184,6 +191,28 @@ func (b *workbookBuilder) sheet(p sheetPlan) {
 		b.protect(p.name)
 	}
 	b.layout(p, header)
+}
+
+// headerHeight returns the height of the header row in points.
+func headerHeight(columns []columnPlan) float64 {
+	most := 1
+	for _, c := range columns {
+		most = max(most, linesOf(c.header, c.width-3))
+	}
+	return float64(13*most + 5)
+}
+
+// linesOf estimates how many lines a text takes when it is broken at blanks.
+func linesOf(text string, width float64) int {
+	lines, used := 1, 0.0
+	for word := range strings.FieldsSeq(text) {
+		n := float64(utf8.RuneCountInString(word))
+		if used > 0 && used+1+n > width {
+			lines, used = lines+1, 0
+		}
+		used += 1 + n
+	}
+	return lines
 }
 
 // labels locks and notes the first column of a table whose rows are given.
@@ -207,13 +236,20 @@ func (b *workbookBuilder) value(sheet string, column, row int, text string, kind
 	look := kind.style()
 	if grey {
 		look = "example"
+		if kind == numberCell {
+			look = "example number"
+		}
 	}
 	b.do(b.book.SetCellStyle(sheet, cell, cell, b.style[look]))
 	switch {
 	case text == "":
-	case kind == numberCell && isTypedNumber(text) && !grey:
+	case kind == numberCell && !grey && typedDecimals(text) >= 0:
 		// SetCellDefault keeps all digits; the calls for numbers cut them at 15.
-		b.do(b.book.SetCellDefault(sheet, cell, text))
+		v, _ := units.ParseNumber(text, false)
+		b.do(b.book.SetCellDefault(sheet, cell, numberText(v)))
+		if numberText(v) != text {
+			b.do(b.book.SetCellStyle(sheet, cell, cell, b.decimals(typedDecimals(text))))
+		}
 	case kind == dateCell && isTypedDate(text) && !grey:
 		day, _ := time.Parse(time.DateOnly, text)
 		b.do(b.book.SetCellInt(sheet, cell, int64(day.Sub(dayZero)/(24*time.Hour))))
@@ -225,10 +261,29 @@ func (b *workbookBuilder) value(sheet string, column, row int, text string, kind
 // dayZero is the day from which a workbook counts, for days from March 1900 on.
 var dayZero = time.Date(1899, 12, 30, 0, 0, 0, 0, time.UTC)
 
-// isTypedNumber says whether the reader gives back the very text of a number.
-func isTypedNumber(text string) bool {
+// typedDecimals returns how many digits of a number stand behind its point, or
+// -1 where the reader would not give back the very text: 1e3, +5, .5, 007.
+func typedDecimals(text string) int {
 	v, err := units.ParseNumber(text, false)
-	return err == nil && numberText(v) == text
+	if err != nil {
+		return -1
+	}
+	_, decimals, _ := strings.Cut(text, ".")
+	if numberText(v) == text || (numberFormat{fixedNumber, len(decimals)}).shown(v) == text {
+		return len(decimals)
+	}
+	return -1
+}
+
+// decimals returns the style of a number with so many decimals: 0.30 stays 0.30.
+func (b *workbookBuilder) decimals(n int) int {
+	name := fmt.Sprintf("number of %d decimals", n)
+	if _, ok := b.style[name]; !ok {
+		id, err := b.book.NewStyle(bodyStyle("0."+strings.Repeat("0", n), "right"))
+		b.do(err)
+		b.style[name] = id
+	}
+	return b.style[name]
 }
 
 func isTypedDate(text string) bool {
