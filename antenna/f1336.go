@@ -77,7 +77,7 @@ func (p *omni) loss(t float64) float64 {
 	case t < p.theta3:
 		return p.shoulder
 	}
-	return max(p.shoulder, 12-10*math.Log10(1/(x*math.Sqrt(x))+p.k))
+	return max(p.shoulder, 12-perNeper*math.Log(1/(x*math.Sqrt(x))+p.k))
 }
 
 func (p *omni) Relative(_, theta float64) float64 {
@@ -182,9 +182,9 @@ func (p *sector) elevation(theta float64) float64 {
 	case x < p.xk:
 		return min(12*x*x, p.shoulder, p.back)
 	case x < 4:
-		return min(max(p.shoulder, 12-10*math.Log10(1/(x*math.Sqrt(x))+p.kv)), p.back)
+		return min(max(p.shoulder, 12-perNeper*math.Log(1/(x*math.Sqrt(x))+p.kv)), p.back)
 	case theta < math.Pi/2:
-		return min(p.lambdaV+p.c*math.Log10(x), p.back)
+		return min(p.lambdaV+p.c/10*perNeper*math.Log(x), p.back)
 	}
 	return p.back
 }

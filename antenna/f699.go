@@ -66,7 +66,7 @@ func (p *dish) loss(psi float64) float64 {
 	case psi < 48*math.Pi/180:
 		// The envelope meets the far value within 0.03 dB at 48 deg; neither
 		// it nor the plateau is passed, so that the loss only rises.
-		return min(max(p.plateau, p.side+25*math.Log10(degrees(psi))), p.far)
+		return min(max(p.plateau, p.side+2.5*perNeper*math.Log(degrees(psi))), p.far)
 	}
 	return p.far
 }
