@@ -90,7 +90,7 @@ func (t *Table) lowest(g *groupIndex, lo, hi float64) Lowest {
 			l.Rows = append(l.Rows, i)
 			a, b := max(r.FromHz, lo), min(r.ToHz, hi)
 			if a > b {
-				a, b = lo, hi // they met within the slack of an edge
+				a, b = b, a // they meet within the slack of an edge
 			}
 			held = append(held, Band{a, b})
 			if r.None {

@@ -49,6 +49,19 @@ func lowest(t testing.TB, table *limits.Table, class string, g limits.Group, fro
 	return limits.Lowest{}
 }
 
+// A band that begins a last bit above a row's upper edge meets that edge and no
+// more of the row's law.
+func TestLowestMeetsAnEdgeOnly(t *testing.T) {
+	r := flat("public", limits.S, 100, 200, 1000)
+	r.Exponent = -1
+	table := build(t, r)
+	l := lowest(t, table, "public", heating, math.Nextafter(200e6, 1e9), 400e6)
+	assert.InDelta(t, 5, l.S, 1e-12, "1000/200; rounding")
+	assert.InDelta(t, 200e6, l.SAtHz, 1)
+	l = lowest(t, table, "public", heating, 50e6, math.Nextafter(100e6, 0))
+	assert.InDelta(t, 10, l.S, 1e-12, "1000/100; rounding")
+}
+
 // randomTable draws bands that may meet, leave gaps or be deliberate gaps.
 func randomTable(t *rapid.T) *limits.Table {
 	var rows []limits.Row
