@@ -15,6 +15,7 @@ import (
 	"github.com/stretchr/testify/assert"
 	"github.com/stretchr/testify/require"
 	"golang.org/x/image/font/sfnt"
+	"golang.org/x/sync/errgroup"
 	"gonum.org/v1/plot/vg"
 
 	"example.org/standclear/exposure"
@@ -27,7 +28,7 @@ func TestSVGIsWellFormedAndItsPictureIsCalledAPNG(t *testing.T) {
 	require.NoError(t, err)
 	assert.Contains(t, string(svg), "data:image/png;base64,")
 	assert.NotContains(t, string(svg), "image/jpg")
-	assert.Contains(t, string(svg), "<title>Harbour mill (invented): plan of surface main roof</title>")
+	assert.Contains(t, string(svg), "<title>Harbour mill (invented): plan of surface main roof, exposure ratio for general public</title>")
 	assert.Contains(t, string(svg), "font-family:'Liberation Sans',Arial")
 	wellFormed(t, svg)
 }
@@ -218,6 +219,31 @@ func TestAPanicOfTheDrawingLibraryIsAnError(t *testing.T) {
 	assert.ErrorContains(t, err, "no such font")
 	_, err = f.PNG()
 	assert.ErrorContains(t, err, "no such font")
+}
+
+func TestFiguresMayBeDrawnAtTheSameTime(t *testing.T) {
+	want, err := Plan(samplePlan())
+	require.NoError(t, err)
+	svg, err := want.SVG()
+	require.NoError(t, err)
+	var group errgroup.Group
+	for range 4 {
+		group.Go(func() error {
+			f, err := Plan(samplePlan())
+			if err != nil {
+				return err
+			}
+			if _, err = f.PNG(); err != nil {
+				return err
+			}
+			got, err := f.SVG()
+			if err == nil && !bytes.Equal(got, svg) {
+				err = errors.New("another drawing at the same time changed this one")
+			}
+			return err
+		})
+	}
+	assert.NoError(t, group.Wait())
 }
 
 func TestDataIsNotTouched(t *testing.T) {

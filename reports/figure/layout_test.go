@@ -166,7 +166,7 @@ func TestEveryAntennaAndPlaceIsLabelledOrNamedAtTheFoot(t *testing.T) {
 	}
 	said += strings.Join(l.Unlabelled, "\n")
 	for i := 0; i < 30; i++ {
-		assert.Contains(t, said, fmt.Sprintf("place %d  ", i))
+		assert.Contains(t, said, fmt.Sprintf("place %d: ", i))
 	}
 	for i := 0; i < 60; i++ {
 		assert.Contains(t, said, fmt.Sprintf("sector %d", i))

@@ -66,6 +66,9 @@ func Plan(d PlanData) (f *Figure, err error) {
 	if d.Site.About.Name != "" {
 		title = d.Site.About.Name + ": plan of surface " + surface.ID
 	}
+	if d.Grid != nil && d.Grid.Class != "" {
+		title += ", exposure ratio for " + d.Grid.Class
+	}
 	p := newPage()
 	m := &chart{page: p, site: d.Site, classes: d.Classes, zones: zonesOf(d.Zones, surface.ID)}
 	p.heading(title, bodySentence(surface), m.resolutionSentence())

@@ -44,6 +44,9 @@ func Section(d SectionData) (f *Figure, err error) {
 	if d.Site.About.Name != "" {
 		title = d.Site.About.Name + ": vertical section"
 	}
+	if d.Grid != nil && d.Grid.Class != "" {
+		title += ", exposure ratio for " + d.Grid.Class
+	}
 	p := newPage()
 	m := &chart{page: p, site: d.Site, classes: d.Classes}
 	for _, z := range d.Zones {

@@ -316,15 +316,16 @@ func wrap(str string, width float64, f face) []string {
 }
 
 // printable returns text that an SVG file may hold: control characters, which
-// XML forbids, become spaces and broken UTF-8 the replacement character.
+// XML forbids, become spaces, broken UTF-8 the replacement character, and a run
+// of spaces, which XML takes for one, becomes one.
 func printable(s string) string {
-	s = strings.ToValidUTF8(s, "\uFFFD")
-	return strings.TrimSpace(strings.Map(func(r rune) rune {
+	s = strings.Map(func(r rune) rune {
 		if unicode.IsControl(r) || r == '\uFFFE' || r == '\uFFFF' {
 			return ' '
 		}
 		return r
-	}, s))
+	}, strings.ToValidUTF8(s, "\uFFFD"))
+	return strings.Join(strings.Fields(s), " ")
 }
 
 // shorten cuts a text to n characters.

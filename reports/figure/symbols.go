@@ -195,21 +195,22 @@ func (m *chart) places(points []exposure.PointResult, surface *exposure.Surface)
 		ratio := chosenRatio(r)
 		text := shorten(r.ID, 24)
 		if ratio != nil && r.Class == "" {
-			text += "  " + shorten(ratio.Class, 18)
+			text += " (" + shorten(ratio.Class, 18) + ")"
 		}
+		text += ": "
 		draw := placeOpen
 		switch {
 		case ratio == nil:
-			text += "  not assessed"
+			text += "not assessed"
 			open = true
 		case ratio.Verdict == exposure.Above:
-			text += "  " + ratioText(float64(ratio.ExposureRatio))
+			text += ratioText(float64(ratio.ExposureRatio))
 			draw, above = placeAbove, true
 		case ratio.Verdict == exposure.NotAssessed || !ratio.Covered:
-			text += "  ≥ " + ratioText(float64(ratio.ExposureRatio)) + ", not assessed"
+			text += "≥ " + ratioText(float64(ratio.ExposureRatio)) + ", not assessed"
 			open = true
 		default:
-			text += "  " + ratioText(float64(ratio.ExposureRatio))
+			text += ratioText(float64(ratio.ExposureRatio))
 			draw, within = placeWithin, true
 		}
 		draw(m.sheet, c)
