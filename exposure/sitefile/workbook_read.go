@@ -108,7 +108,7 @@ type cellFault struct {
 	row     gridRow
 	i       int
 	message string
-	failed  bool // a failed formula, whose text begins with # as a comment does
+	failed  bool // the row begins with a failed formula, which is no comment
 }
 
 // cells reads the rows of a sheet. The structure comes from the sheet's own XML,
@@ -135,6 +135,7 @@ func (r *workbookReader) cells(s *sheetScan) (*grid, Faults, error) {
 			}
 		}
 		row := gridRow{number: scanned.number, col: func(i int) string { return columnLetters(i + 1) }}
+		failed := len(scanned.cells) > 0 && scanned.cells[0].column == 1 && scanned.cells[0].kind == "e"
 		for _, c := range scanned.cells {
 			if !c.formula && !c.stored {
 				continue
@@ -152,12 +153,12 @@ func (r *workbookReader) cells(s *sheetScan) (*grid, Faults, error) {
 			}
 			row.cells[c.column-1] = strings.TrimSpace(text)
 			if fault != "" {
-				found = append(found, cellFault{row, c.column - 1, fault, c.kind == "e" && c.column == 1})
+				found = append(found, cellFault{row, c.column - 1, fault, failed})
 			}
 			if isNumber(c) && r.format(c).kind == percentShown {
 				percent = append(percent, cellFault{row, c.column - 1, fmt.Sprintf(
 					"%s is formatted as a percentage, so that %s is stored and %s %% shown; format the cell as a number and type the number in the unit of the header",
-					cellName(c.column, scanned.number), text, hundredfold(text)), false})
+					cellName(c.column, scanned.number), text, hundredfold(text)), failed})
 			}
 		}
 		g.add(row)
@@ -197,6 +198,10 @@ func (r *workbookReader) format(c cellScan) numberFormat {
 // error where what the library read (got) is not what the sheet stores.
 func (r *workbookReader) cell(c cellScan, got string) (text, fault string, err error) {
 	differs := fmt.Errorf("it stores %q and is read as %q", c.value, got)
+	const uncalculated = "the formula has no stored value: the workbook was never calculated; open it in a spreadsheet program and save it, or type the value"
+	if c.formula && !c.stored {
+		return "", uncalculated, nil
+	}
 	switch c.kind {
 	case "e":
 		return c.value, fmt.Sprintf("%q is what a formula gives that failed; mend the formula or type the value", c.value), nil
@@ -223,7 +228,7 @@ func (r *workbookReader) cell(c cellScan, got string) (text, fault string, err e
 	}
 	if c.value == "" {
 		if c.formula {
-			return "", "the formula has no stored value: the workbook was never calculated; open it in a spreadsheet program and save it, or type the value", nil
+			return "", uncalculated, nil
 		}
 		if got != "" {
 			return "", "", differs
