@@ -51,7 +51,6 @@ func workbook(a *exposure.Assessment, pictures []picture) ([]byte, error) {
 	r.columnMethods()
 	b.keep(f.SetCalcProps(&excelize.CalcPropsOptions{FullCalcOnLoad: ptr(true)}))
 	b.properties()
-	f.SetActiveSheet(0)
 	return b.bytes()
 }
 
