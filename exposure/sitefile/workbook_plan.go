@@ -182,7 +182,7 @@ func verticalColumns() []columnPlan {
 
 // planColumn turns a column of the schema into what the sheet shows and checks.
 func planColumn(c ColumnSchema) columnPlan {
-	p := columnPlan{header: c.Header(), note: noteOf(c), choices: c.Choices, words: c.Words,
+	p := columnPlan{name: c.Name, header: c.Header(), note: noteOf(c), choices: c.Choices, words: c.Words,
 		limits: c.Range, rule: c.Rule, required: c.Required && c.Unless == ""}
 	switch c.Kind {
 	case Number:

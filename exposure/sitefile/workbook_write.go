@@ -30,6 +30,7 @@ type sheetPlan struct {
 
 // columnPlan is one column, or one item of the site table.
 type columnPlan struct {
+	name     string // of the schema's column: power
 	header   string // power [W]
 	note     string // shown at the header
 	kind     cellKind
@@ -291,8 +292,25 @@ func isTypedDate(text string) bool {
 	return err == nil && day.Year() > 1900 && day.Year() < 10000
 }
 
-// escapeMark is what a workbook reads as one character by its number.
-var escapeMark = regexp.MustCompile(`_(x[0-9A-Fa-f]{4}_)`)
+// escapeMark follows the underscore of what a workbook reads as one character by
+// its number: _x0041_ is A.
+var escapeMark = regexp.MustCompile(`^x[0-9A-Fa-f]{4}_`)
+
+// escapeMarks writes the underscore of each mark as a mark itself, which leaves
+// the text as typed. Marks may share an underscore.
+func escapeMarks(text string) string {
+	if !strings.Contains(text, "_x") {
+		return text
+	}
+	var b strings.Builder
+	for i := range len(text) {
+		b.WriteByte(text[i])
+		if text[i] == '_' && escapeMark.MatchString(text[i+1:]) {
+			b.WriteString("x005F_")
+		}
+	}
+	return b.String()
+}
 
 // text writes a text that stays text: a leading = is no formula.
 func (b *workbookBuilder) text(sheet string, column, row int, text string) {
@@ -311,8 +329,7 @@ func (b *workbookBuilder) text(sheet string, column, row int, text string) {
 		b.do(fmt.Errorf("%s: the text is not UTF-8", place))
 		return
 	}
-	// A mark may begin with the end of the one before it, so go on until none is left.
-	b.do(b.book.SetCellStr(sheet, cellName(column, row), escapeMark.ReplaceAllString(text, "_x005F_$1")))
+	b.do(b.book.SetCellStr(sheet, cellName(column, row), escapeMarks(text)))
 }
 
 // note shows help at a header.
