@@ -1,0 +1,124 @@
+package main
+
+import (
+	"context"
+	"fmt"
+	"os"
+	"path/filepath"
+
+	"github.com/spf13/cobra"
+
+	"example.org/standclear/exposure"
+	"example.org/standclear/exposure/sitefile/demo"
+	"example.org/standclear/exposure/units"
+	"example.org/standclear/reports"
+)
+
+type assessOptions struct {
+	siteFlags
+	out                 string
+	resolution          string
+	demo, force, strict bool
+}
+
+func newAssess(std streams) *cobra.Command {
+	var o assessOptions
+	c := &cobra.Command{
+		Use:   "assess SITE -o DIR",
+		Short: "Do the whole job: fields, verdicts, distances and keep-out lines in one report workbook with figures, map files and results.json.",
+		Example: `  standclear assess --demo -o demo-report
+  standclear assess mysite -o myreport`,
+		Args: func(cmd *cobra.Command, args []string) error {
+			if o.demo {
+				return arguments(0, 0, "no SITE beside --demo")(cmd, args)
+			}
+			return arguments(1, 1, "SITE")(cmd, args)
+		},
+		RunE: func(cmd *cobra.Command, args []string) error {
+			return runAssess(cmd.Context(), std, o, args)
+		},
+	}
+	o.register(c)
+	c.Flags().StringVarP(&o.out, "output", "o", "", "folder `DIR` to write the report to")
+	c.Flags().BoolVar(&o.demo, "demo", false, "the invented demo site that the program carries, in place of SITE")
+	c.Flags().BoolVar(&o.force, "force", false, "replace a report that is already there")
+	c.Flags().StringVar(&o.resolution, "resolution", "0.05", "width in `METRES` to which the keep-out lines enclose the model's boundary")
+	strictFlag(c, &o.strict)
+	return c
+}
+
+func runAssess(ctx context.Context, std streams, o assessOptions, args []string) error {
+	if o.out == "" {
+		return usageError{"-o", "", "the folder to write the report to is missing; write -o DIR, such as -o report"}
+	}
+	resolution, err := positive("--resolution", o.resolution, "0.05", units.Length)
+	if err != nil {
+		return err
+	}
+	if err := vacant(o.out, o.force); err != nil {
+		return err
+	}
+	var site *exposure.Site
+	if o.demo {
+		site, err = o.loadFS(std, demo.FS)
+	} else {
+		site, err = o.load(std, args[0])
+	}
+	if err != nil {
+		return err
+	}
+	tell, end := progress(ctx, std, "assessing", o.quiet)
+	model, err := exposure.New(site, exposure.Options{Progress: tell})
+	if err != nil {
+		end()
+		return err
+	}
+	a, err := model.Assess(ctx, exposure.AssessOptions{Program: program, ResolutionM: resolution})
+	end()
+	if err != nil {
+		return err
+	}
+	if _, err := reports.Write(a, o.out, reports.Options{Force: o.force, Context: ctx}); err != nil {
+		return err
+	}
+	if o.json {
+		err = printJSON(std, a)
+	} else {
+		err = printAssess(std, o, a, args)
+	}
+	if err == nil && o.strict && (anyPointFound(a.Points, false) || anyZoneFound(site, a.Zones)) {
+		err = errFound
+	}
+	return err
+}
+
+// vacant refuses, before the work is done, a folder that already holds a report.
+func vacant(dir string, force bool) error {
+	info, err := os.Stat(dir)
+	switch {
+	case err != nil:
+		return nil // writing will make it, or say why it cannot
+	case !info.IsDir():
+		return usageError{"-o", dir, "is a file; give a folder, such as -o report"}
+	case force:
+		return nil
+	}
+	for _, name := range []string{"report.xlsx", "results.json"} {
+		if exists(filepath.Join(dir, name)) {
+			return usageError{"-o", dir, "already holds a report; add --force to replace it, or give another folder"}
+		}
+	}
+	return nil
+}
+
+func printAssess(std streams, o assessOptions, a *exposure.Assessment, args []string) error {
+	again := "To get this site as files, change them and run it again: standclear init --demo mysite, then: standclear assess mysite -o myreport"
+	if !o.demo {
+		again = fmt.Sprintf("After a change, run it again: standclear assess %s -o %s --force", quoted(args[0]), quoted(o.out))
+	}
+	if err := reports.Screen(std.out, a); err != nil {
+		return err
+	}
+	_, err := fmt.Fprintln(std.out, again)
+	return err
+}

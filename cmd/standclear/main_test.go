@@ -1,0 +1,130 @@
+package main
+
+import (
+	"bytes"
+	"errors"
+	"os"
+	"os/exec"
+	"path/filepath"
+	"strconv"
+	"strings"
+	"testing"
+
+	"github.com/rogpeppe/go-internal/testscript"
+	"github.com/spf13/cobra"
+	"github.com/stretchr/testify/assert"
+	"github.com/stretchr/testify/require"
+)
+
+func TestMain(m *testing.M) {
+	testscript.Main(m, map[string]func(){"standclear": main})
+}
+
+// TestScripts runs the command tests, one behaviour each. The command "status N
+// standclear ..." runs a command and holds its exit status against N; stdout and
+// stderr then look at what it wrote. $DATA is the repository's testdata folder.
+func TestScripts(t *testing.T) {
+	data, err := filepath.Abs(filepath.Join("..", "..", "testdata"))
+	require.NoError(t, err)
+	testscript.Run(t, testscript.Params{
+		Dir:                 filepath.Join("testdata", "script"),
+		RequireExplicitExec: true,
+		RequireUniqueNames:  true,
+		Setup: func(e *testscript.Env) error {
+			e.Setenv("DATA", data)
+			return nil
+		},
+		Cmds: map[string]func(*testscript.TestScript, bool, []string){"status": status, "replace": replace},
+	})
+}
+
+// status asserts the exact exit status of a command.
+func status(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) < 2 {
+		ts.Fatalf("usage: status N command args...")
+	}
+	want, err := strconv.Atoi(args[0])
+	ts.Check(err)
+	got := 0
+	if err := ts.Exec(args[1], args[2:]...); err != nil {
+		var exit *exec.ExitError
+		if !errors.As(err, &exit) {
+			ts.Fatalf("%v", err)
+		}
+		got = exit.ExitCode()
+	}
+	if got != want {
+		ts.Fatalf("exit status %d, want %d", got, want)
+	}
+}
+
+// replace changes every occurrence of a text in a file, and fails where there is
+// none: "replace OLD NEW FILE".
+func replace(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) != 3 {
+		ts.Fatalf("usage: replace old new file")
+	}
+	text := ts.ReadFile(args[2])
+	if !strings.Contains(text, args[0]) {
+		ts.Fatalf("%s does not hold %q", args[2], args[0])
+	}
+	ts.Check(os.WriteFile(ts.MkAbs(args[2]), []byte(strings.ReplaceAll(text, args[0], args[1])), 0o600))
+}
+
+// everyCommand calls f for each command of the tree that a user can run.
+func everyCommand(c *cobra.Command, f func(*cobra.Command)) {
+	f(c)
+	for _, sub := range c.Commands() {
+		if sub.IsAvailableCommand() && sub.Name() != "help" {
+			everyCommand(sub, f)
+		}
+	}
+}
+
+// TestHelpExamplesRun runs each example that a command's help prints, as
+// printed, beside the demo site, and wants exit status 0.
+func TestHelpExamplesRun(t *testing.T) {
+	if testing.Short() {
+		t.Skip("runs every command on the demo site")
+	}
+	dir := t.TempDir()
+	t.Chdir(dir)
+	shell := func(line string) (string, error) {
+		cmd := exec.Command("sh", "-c", line)
+		cmd.Env = append(os.Environ(), "CI=1")
+		var errOut bytes.Buffer
+		cmd.Stderr = &errOut
+		err := cmd.Run()
+		return errOut.String(), err
+	}
+	everyCommand(newRoot(streams{}), func(c *cobra.Command) {
+		assert.NotEmpty(t, c.Short, c.CommandPath())
+		assert.True(t, strings.HasSuffix(c.Short, "."), "%s: help is one sentence", c.CommandPath())
+		lines := strings.Split(c.Example, "\n")
+		assert.GreaterOrEqual(t, len(lines), 2, "%s: two examples", c.CommandPath())
+		for _, line := range lines {
+			require.NoError(t, os.RemoveAll("mysite"))
+			for _, name := range []string{"newsite", "demo-report", "myreport"} {
+				require.NoError(t, os.RemoveAll(name))
+			}
+			if !strings.Contains(line, "init --demo mysite") {
+				text, err := shell("standclear init --demo mysite")
+				require.NoError(t, err, text)
+			}
+			text, err := shell(strings.TrimSpace(line))
+			assert.NoError(t, err, "%s: %s", line, text)
+		}
+	})
+}
+
+// TestWordsOfHelp: no help promises what the program cannot know.
+func TestWordsOfHelp(t *testing.T) {
+	everyCommand(newRoot(streams{}), func(c *cobra.Command) {
+		var out bytes.Buffer
+		c.SetOut(&out)
+		require.NoError(t, c.Help())
+		for _, word := range []string{"safe", "compliant", "guarantee", "proven"} {
+			assert.NotContains(t, strings.ToLower(out.String()), word, c.CommandPath())
+		}
+	})
+}
