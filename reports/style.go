@@ -39,6 +39,8 @@ func (d digits) numberFormat(v float64) string {
 		return "0"
 	case a < 0.001 || a >= 1e6:
 		return "0.0E+00"
+	case a >= 0.9995 && a < 1:
+		return "0.000000" // not 1: the verdict turns there
 	case a < 1:
 		return "0.000"
 	case a > 1 && a < 1.01:

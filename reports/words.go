@@ -55,8 +55,13 @@ func ratioText(n exposure.Number) string {
 	case v < 0.001:
 		return "below 0.001"
 	}
-	if v > 1 && v < 1.01 {
-		return significant(v, 5) // above, and must look so
+	switch {
+	case v > 1 && v < 1.00005:
+		return "just above 1" // the verdict turns here: no rounding may hide it
+	case v > 1 && v < 1.01:
+		return significant(v, 5)
+	case v >= 0.9995 && v < 1:
+		return "just below 1"
 	}
 	return significant(v, 3)
 }
