@@ -11,8 +11,15 @@ import (
 	"example.org/standclear/antenna"
 )
 
-// extentGapM is how close the search for an extent brackets the boundary, m.
-const extentGapM = 0.01
+// The search for an extent brackets the boundary to within extentFine of the
+// distance (or extentFineM) while that is cheap, and after extentCheap boxes is
+// content with extentCoarse (or extentCoarseM). After extentMost it ends with
+// the bracket it has.
+const (
+	extentFine, extentFineM     = 1e-3, 0.005
+	extentCoarse, extentCoarseM = 5e-3, 0.02
+	extentCheap, extentMost     = 1500, 100_000
+)
 
 // target is what a distance is measured from: a row, a housing or all.
 type target struct {
@@ -381,30 +388,39 @@ func (h *farHeap) Pop() any {
 }
 
 // reachAlong finds the largest x coordinate of the boundary volume, farthest
-// box first: a box whose ratio is below the share is dropped, one above it, or
-// a point above it, raises the inner end, and the search ends when the farthest
-// box left is within extentGapM of the inner end, or that small itself.
+// box first: a box whose ratio is below the share is dropped; one above it, or a
+// point above it, raises the inner end. The outer end is the far side of the
+// farthest box that could not be dropped.
 func (e *evaluator) reachAlong(ctx context.Context, radius float64) bracket {
-	inner, found := 0.0, false
+	inner, outer, found := 0.0, 0.0, false
 	h := farHeap{{box{h: Point{X: radius, Y: radius, Z: radius}}, radius}}
-	for len(h) > 0 && ctx.Err() == nil {
+	for boxes := 0; len(h) > 0 && ctx.Err() == nil; boxes++ {
 		top := heap.Pop(&h).(farBox)
-		if found && top.far <= inner+extentGapM {
-			return bracket{inner: inner, outer: math.Max(top.far, inner) + boxSlack}
+		if top.far <= 0 {
+			break // the rest of the boundary, if any, lies behind the centre
 		}
-		if !found && top.far <= 0 {
-			break // the boundary, if any, lies behind the centre
+		gap := math.Max(extentFine*top.far, extentFineM)
+		if boxes > extentCheap {
+			gap = math.Max(extentCoarse*top.far, extentCoarseM)
+		}
+		if found && top.far <= inner+gap || boxes > extentMost {
+			outer = math.Max(outer, top.far)
+			break
 		}
 		v, reactive := e.decide(top.b)
 		if v < 0 {
 			continue
 		}
-		small := math.Max(top.b.h.X, math.Max(top.b.h.Y, top.b.h.Z)) <= extentGapM/2
 		if v > 0 || reactive {
-			return bracket{inner: math.Max(inner, top.far), outer: top.far + boxSlack}
+			inner, outer = math.Max(inner, top.far), math.Max(outer, top.far)
+			found = true
+			break
 		}
-		if small {
-			return bracket{inner: inner, outer: top.far + boxSlack}
+		if math.Max(top.b.h.X, math.Max(top.b.h.Y, top.b.h.Z)) <= extentFineM/2 {
+			// It stays open, so it counts; go on to find out how near a point
+			// above the share lies.
+			outer = math.Max(outer, top.far)
+			continue
 		}
 		if _, at := e.at(top.b.c); at > e.share && top.b.c.X > inner {
 			inner, found = top.b.c.X, true
@@ -413,10 +429,10 @@ func (e *evaluator) reachAlong(ctx context.Context, radius float64) bracket {
 			heap.Push(&h, farBox{b, b.c.X + b.h.X})
 		}
 	}
-	if found {
-		return bracket{inner: inner, outer: inner + boxSlack}
+	if outer == 0 && !found {
+		return bracket{none: true}
 	}
-	return bracket{none: true}
+	return bracket{inner: inner, outer: math.Max(outer, inner) + boxSlack}
 }
 
 // halves splits a box across its longest side.

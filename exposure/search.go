@@ -80,14 +80,7 @@ type search struct {
 // in an order that does not depend on it.
 func (e *evaluator) run(ctx context.Context, p *plane, workers int) ([]leaf, int, error) {
 	root := node{level: p.root}
-	all := slab{lo: p.from, hi: p.to}
-	for i := range e.terms {
-		all.active = append(all.active, int32(i))
-	}
-	for i := range e.reach {
-		all.near = append(all.near, int32(i))
-	}
-	root.slabs = []slab{all}
+	root.slabs = []slab{e.everything(p)}
 	for i := range p.outline {
 		root.edges = append(root.edges, int32(i))
 	}

@@ -14,10 +14,12 @@ type summit struct {
 	reach        reach // whether the region touches a reactive region
 }
 
-// peakBox is a box of the search for the largest ratio, by its upper bound.
+// peakBox is a box of the search for the largest ratio, by its upper bound, with
+// the terms that are still worth bounding in it.
 type peakBox struct {
 	b     box
 	upper float64
+	open  slab
 }
 
 type peakHeap []peakBox
@@ -34,15 +36,16 @@ func (h *peakHeap) Pop() any {
 }
 
 // The search for the largest ratio ends at this relative gap, or after this many
-// boxes with the gap it has.
+// bounds of single terms with the gap it has.
 const (
-	summitGap   = 1e-2
-	summitBoxes = 20000
+	summitGap    = 2e-2
+	summitEffort = 400_000
 )
 
 // largestOver finds the largest ratio over the body volume of a plane, best
-// bound first (branch and bound), to within summitGap or, at a source's own
-// centre, to the finest cell.
+// bound first (branch and bound), to within summitGap or, at the
+// edge of a reactive region, to the finest cell. What lies inside a reactive
+// region that a method does not reach is not assessed and stays out of it.
 func (e *evaluator) largestOver(ctx context.Context, p *plane) summit {
 	side := float64(int64(1)<<p.root) * p.step
 	first := box{c: Point{X: p.x0 + side/2, Y: p.y0 + side/2, Z: (p.from + p.to) / 2}, h: Point{X: side / 2, Y: side / 2, Z: (p.to - p.from) / 2}}
@@ -61,39 +64,156 @@ func (e *evaluator) largestOver(ctx context.Context, p *plane) summit {
 		}
 		return false, false
 	}
+	scratch := search{e: e, p: p}
 	h := peakHeap{}
-	consider := func(b box) {
+	effort := 0
+	consider := func(b box, open slab) {
 		any, centre := inside(b)
 		if !any {
 			return
 		}
-		_, hi := e.bodyOver(b, p)
-		if centre {
-			if v, at := e.bodyAt(b.c, p); v > s.lower {
-				s.lower, s.at = v, at
+		near := scratch.reaches(grown(b), &open)
+		if near != reached {
+			s.reach = partReach
+			if near == unreached && !p.mean {
+				return
 			}
 		}
-		heap.Push(&h, peakBox{b, hi})
+		lo, hi, terms := scratch.body(b, &open, s.lower)
+		effort += terms
+		if hi <= s.lower {
+			return
+		}
+		if centre && near == reached {
+			if !p.mean {
+				_, lo = e.at(b.c)
+				effort += len(e.terms) / 2
+			}
+			if lo > s.lower {
+				s.lower, s.at = lo, b.c
+			}
+		}
+		heap.Push(&h, peakBox{b, hi, open})
 	}
-	consider(first)
+	e.seed(p, &s)
+	consider(first, e.everything(p))
 	s.reach = e.touchesReactive(p, first, inside)
-	for boxes := 0; len(h) > 0 && ctx.Err() == nil; boxes++ {
+	for len(h) > 0 && ctx.Err() == nil {
 		top := h[0]
 		s.upper = math.Max(top.upper, s.lower)
-		if top.upper <= s.lower*(1+summitGap) {
-			return s
-		}
 		small := top.b.h.X <= p.step/2 && top.b.h.Z <= p.step/2
-		if small || boxes > summitBoxes {
-			// Beside a source's centre the bound never closes: say so.
+		if top.upper <= s.lower*(1+summitGap) || small || effort > summitEffort {
 			return s
 		}
 		heap.Pop(&h)
 		for _, b := range split(top.b, p.mean) {
-			consider(b)
+			consider(b, top.open)
 		}
 	}
+	s.upper = math.Max(s.upper, s.lower)
 	return s
+}
+
+// everything is a column with every term still open.
+func (e *evaluator) everything(p *plane) slab {
+	all := slab{lo: p.from, hi: p.to}
+	for i := range e.terms {
+		all.active = append(all.active, int32(i))
+	}
+	for i := range e.reach {
+		all.near = append(all.near, int32(i))
+	}
+	return all
+}
+
+// grown covers the rounding of a box's coordinates.
+func grown(b box) box {
+	b.h = b.h.Add(Point{X: boxSlack, Y: boxSlack, Z: boxSlack})
+	return b
+}
+
+// seed looks in front of each source, so that the search starts with a good
+// value to beat.
+func (e *evaluator) seed(p *plane, s *summit) {
+	for i := range e.terms {
+		for _, em := range e.terms[i].em {
+			w := em.(placed).where()
+			for _, d := range [4]float64{0.5, 1, 2, 4} {
+				c := w.pos.Add(w.axes.Boresight.Scale(d))
+				c.Z = math.Min(math.Max(c.Z, p.from), p.to)
+				if !insideEdges(p.outline, (c.X-p.x0)/p.step, (c.Y-p.y0)/p.step) {
+					continue
+				}
+				line := box{c: c}
+				if p.mean {
+					line = line.heights(p.from, p.to)
+				}
+				if e.reaches(line) != reached {
+					continue
+				}
+				_, v := e.at(c)
+				if p.mean {
+					by := e.bodyNear(c.X, c.Y, c.Z, p.from, p.to)
+					v, _ = by.largest(e.ng)
+				}
+				if v > s.lower {
+					s.lower, s.at = v, c
+				}
+			}
+		}
+	}
+}
+
+// body encloses the class's ratio over a box of the body volume: of points, or
+// of whole columns where a mean is compared. Terms whose gap no longer matters
+// beside best are frozen in open. terms is the number of bounds it took.
+func (s *search) body(b box, open *slab, best float64) (lo, hi float64, terms int) {
+	count := 1
+	b = grown(b)
+	if s.p.mean {
+		count = min(max(1, int(math.Ceil((s.p.to-s.p.from)/(2*math.Max(b.h.X, s.p.step))))), mostSlabs)
+	}
+	if count > 1 {
+		lo, hi, _ = s.columnBounds(b, open, count)
+	} else {
+		// Bounds over the whole box enclose means over it as well.
+		lo, hi = s.bound(b, open)
+	}
+	terms = count * len(open.active)
+	limit := 0.05 * summitGap * best / float64(len(s.e.terms)+1)
+	next := *open
+	next.active = nil
+	var l, h groupRatios
+	for k, i := range open.active {
+		gap := s.gap(k, count)
+		if !(gap <= limit) {
+			next.active = append(next.active, i)
+			continue
+		}
+		if count > 1 {
+			l, h = s.means[k].lo, s.means[k].hi
+		} else {
+			s.e.terms[i].over(b, s.e.rule, &l, &h)
+		}
+		for g := 0; g < s.e.ng; g++ {
+			next.flo[g] += l[g]
+			next.fhi[g] += h[g]
+		}
+	}
+	*open = next
+	return lo, hi, terms
+}
+
+// gap is the width of the k-th active term's last bounds.
+func (s *search) gap(k, count int) float64 {
+	if count == 1 {
+		return s.width[k]
+	}
+	wide := 0.0
+	for g := 0; g < s.e.ng; g++ {
+		wide = math.Max(wide, s.means[k].hi[g]-s.means[k].lo[g])
+	}
+	return wide
 }
 
 // split halves a box along its longest sides; a column that is compared by its
@@ -124,35 +244,6 @@ func split(b box, keepHeight bool) []box {
 		}
 	}
 	return out
-}
-
-// bodyOver encloses the class's ratio over a box of the body volume: of points,
-// or of whole columns where a mean is compared.
-func (e *evaluator) bodyOver(b box, p *plane) (lo, hi float64) {
-	if !p.mean {
-		b.h = b.h.Add(Point{X: boxSlack, Y: boxSlack, Z: boxSlack})
-		return e.over(b)
-	}
-	s := search{e: e, p: p}
-	count := min(max(1, int(math.Ceil((p.to-p.from)/(2*math.Max(b.h.X, p.step))))), mostSlabs)
-	var all slab
-	for i := range e.terms {
-		all.active = append(all.active, int32(i))
-	}
-	lo, hi, _ = s.columnBounds(b, &all, count)
-	return lo, hi
-}
-
-// bodyAt returns the ratio of the point or of the column through it.
-func (e *evaluator) bodyAt(c Point, p *plane) (float64, Point) {
-	if !p.mean {
-		_, v := e.at(c)
-		return v, c
-	}
-	by, at := e.body(c.X, c.Y, p.from, p.to, true)
-	v, _ := by.largest(e.ng)
-	c.Z = at
-	return v, c
 }
 
 // touchesReactive says whether the body volume touches a region that a method

@@ -229,7 +229,7 @@ func (m *Model) zone(ctx context.Context, g region, r *rule, q *ZoneQuery) (Zone
 // zoneVerdict compares the largest ratio with the share.
 func zoneVerdict(z *Zone, r *rule, top summit) (Verdict, string) {
 	switch {
-	case top.lower > z.Share:
+	case top.lower > z.Share || z.InnerAreaM2 > 0:
 		return Above, ""
 	case len(r.uncovered) > 0:
 		return NotAssessed, listText(r.uncovered)
