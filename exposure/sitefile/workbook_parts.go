@@ -58,7 +58,11 @@ func scanParts(parts []part) (*workbookScan, error) {
 		return nil, err
 	}
 	for _, one := range parts {
-		if strings.HasSuffix(strings.ToLower(one.name), ".xml") || strings.HasSuffix(strings.ToLower(one.name), ".rels") {
+		name := strings.ToLower(one.name)
+		if strings.HasPrefix(name, "xl/worksheets/sheet") {
+			continue // each is walked to its end, or refused since it belongs to no sheet
+		}
+		if strings.HasSuffix(name, ".xml") || strings.HasSuffix(name, ".rels") {
 			if err := checkXML(one); err != nil {
 				return nil, err
 			}

@@ -6,6 +6,7 @@ import (
 	"io"
 	"slices"
 	"strings"
+	"unicode/utf8"
 
 	"example.org/standclear/exposure/units"
 )
@@ -96,6 +97,14 @@ func gridPlan(t TableSchema, g *grid) sheetPlan {
 		p.rows = append(p.rows, rowPlan{cells: plainDecimals(p, g, r.cells)})
 		if t.Vertical {
 			p.labels = append(p.labels, headerPlan(t, r.cell(0)))
+		}
+	}
+	for i := range p.columns {
+		for _, r := range p.rows {
+			if i < len(r.cells) && !t.Vertical {
+				n := float64(utf8.RuneCountInString(r.cells[i])) + 3
+				p.columns[i].width = max(p.columns[i].width, min(n, 60))
+			}
 		}
 	}
 	if t.Name != limitsTable.Name && !t.Vertical {

@@ -5,6 +5,7 @@ import (
 	"encoding/xml"
 	"fmt"
 	"io"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -26,6 +27,9 @@ func scanSheet(one part, lim sheetLimits) (*sheetScan, error) {
 	var open []string // the elements around the token
 	for {
 		token, err := d.Token()
+		if err == io.EOF && !w.begun {
+			return nil, damaged("part %s is empty", one.name)
+		}
 		if err == io.EOF {
 			return w.sheet, nil
 		}
@@ -34,11 +38,9 @@ func scanSheet(one part, lim sheetLimits) (*sheetScan, error) {
 		}
 		switch t := token.(type) {
 		case xml.StartElement:
+			w.begun = true
 			open = append(open, t.Name.Local)
-			if len(open) > 5 {
-				continue
-			}
-			if err := w.start(strings.Join(open, "/"), t); err != nil {
+			if err := w.start(open, t.Attr); err != nil {
 				return nil, err
 			}
 		case xml.EndElement:
@@ -47,6 +49,8 @@ func scanSheet(one part, lim sheetLimits) (*sheetScan, error) {
 			if w.cell != nil && len(open) == 5 && open[4] == "v" {
 				w.cell.value += string(t)
 			}
+		case xml.Directive:
+			return nil, damaged("part %s declares a document type, which a workbook does not", one.name)
 		}
 	}
 }
@@ -57,71 +61,81 @@ type sheetWalk struct {
 	sheet *sheetScan
 	cell  *cellScan // the last one begun
 	last  int       // its column
+	begun bool
 }
 
-// start takes an element, named with those around it.
-func (w *sheetWalk) start(path string, t xml.StartElement) error {
-	at := map[string]string{}
-	for _, a := range t.Attr {
-		if a.Name.Space == "" {
-			at[a.Name.Local] = a.Value
-		}
+// start takes an element, the last of those that are open.
+func (w *sheetWalk) start(open []string, at []xml.Attr) error {
+	is := func(path ...string) bool { return slices.Equal(open[1:], path) }
+	if open[0] != "worksheet" {
+		return damaged("part %s is no sheet", w.part)
 	}
-	switch path {
-	case "worksheet/sheetData/row":
+	switch {
+	case is("sheetData", "row"):
 		return w.row(at)
-	case "worksheet/sheetData/row/c":
+	case is("sheetData", "row", "c"):
 		return w.begin(at)
-	case "worksheet/sheetData/row/c/f":
+	case is("sheetData", "row", "c", "f"):
 		w.cell.formula = true
-	case "worksheet/sheetData/row/c/v", "worksheet/sheetData/row/c/is":
+	case is("sheetData", "row", "c", "v"), is("sheetData", "row", "c", "is"):
 		w.cell.stored = true
-	case "worksheet/cols/col":
-		if from, err := strconv.Atoi(at["min"]); err == nil && truth(at["hidden"]) {
-			to, err := strconv.Atoi(at["max"])
+	case is("cols", "col"):
+		from, err := strconv.Atoi(attribute(at, "min"))
+		if err == nil && truth(attribute(at, "hidden")) {
+			to, err := strconv.Atoi(attribute(at, "max"))
 			if err != nil {
 				to = from
 			}
 			w.sheet.hiddenColumns = append(w.sheet.hiddenColumns, [2]int{from, to})
 		}
-	case "worksheet/mergeCells/mergeCell":
-		r, err := parseRange(at["ref"])
+	case is("mergeCells", "mergeCell"):
+		r, err := parseRange(attribute(at, "ref"))
 		if err != nil {
-			return damaged("sheet %s merges %q", w.lim.name, at["ref"])
+			return damaged("sheet %s merges %q", w.lim.name, attribute(at, "ref"))
 		}
 		w.sheet.merged = append(w.sheet.merged, r)
 	}
 	return nil
 }
 
-func (w *sheetWalk) row(at map[string]string) error {
+// attribute returns an attribute that has no prefix, or "".
+func attribute(at []xml.Attr, name string) string {
+	for _, a := range at {
+		if a.Name.Local == name && a.Name.Space == "" {
+			return a.Value
+		}
+	}
+	return ""
+}
+
+func (w *sheetWalk) row(at []xml.Attr) error {
 	number := 1
 	if n := len(w.sheet.rows); n > 0 {
 		number = w.sheet.rows[n-1].number + 1
 	}
-	if r, ok := at["r"]; ok {
+	if r := attribute(at, "r"); r != "" {
 		n, err := strconv.Atoi(r)
 		if err != nil || n < number {
 			return damaged("sheet %s has row %q after row %d", w.lim.name, r, number-1)
 		}
 		number = n
 	}
-	w.sheet.rows = append(w.sheet.rows, rowScan{number: number, hidden: truth(at["hidden"])})
+	w.sheet.rows = append(w.sheet.rows, rowScan{number: number, hidden: truth(attribute(at, "hidden"))})
 	w.cell, w.last = nil, 0
 	return nil
 }
 
-func (w *sheetWalk) begin(at map[string]string) error {
+func (w *sheetWalk) begin(at []xml.Attr) error {
 	row := &w.sheet.rows[len(w.sheet.rows)-1]
-	c := cellScan{column: w.last + 1, kind: at["t"]}
-	if ref, ok := at["r"]; ok {
+	c := cellScan{column: w.last + 1, kind: attribute(at, "t")}
+	if ref := attribute(at, "r"); ref != "" {
 		col, r, err := excelize.CellNameToCoordinates(ref)
 		if err != nil || r != row.number || col < c.column {
 			return damaged("sheet %s has cell %q in row %d", w.lim.name, ref, row.number)
 		}
 		c.column = col
 	}
-	if s, ok := at["s"]; ok {
+	if s := attribute(at, "s"); s != "" {
 		n, err := strconv.Atoi(s)
 		if err != nil || n < 0 || n >= max(w.lim.styles, 1) {
 			return damaged("sheet %s has style %q in row %d", w.lim.name, s, row.number)

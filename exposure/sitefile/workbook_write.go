@@ -63,7 +63,7 @@ const (
 func writeWorkbook(w io.Writer, plans []sheetPlan) error {
 	f := excelize.NewFile()
 	defer f.Close()
-	b := &workbookBuilder{book: f}
+	b := &workbookBuilder{book: f, style: map[string]int{}, looks: map[role]int{}}
 	b.styles()
 	b.guide(plans)
 	for _, p := range plans {
@@ -84,6 +84,7 @@ type workbookBuilder struct {
 	book    *excelize.File
 	err     error
 	style   map[string]int
+	looks   map[role]int
 	choices []choiceList
 }
 
@@ -94,53 +95,6 @@ func (b *workbookBuilder) do(err error) {
 	}
 }
 
-// styles defines the look of a cell by its role.
-func (b *workbookBuilder) styles() {
-	b.style = map[string]int{}
-	border := []excelize.Border{{Type: "bottom", Color: "8C8C8C", Style: 1}, {Type: "right", Color: "C8C8C8", Style: 1}}
-	head := func(bold bool, fill, horizontal string) *excelize.Style {
-		return &excelize.Style{Font: &excelize.Font{Bold: bold, Family: "Arial", Size: 10}, Border: border,
-			Fill:       excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{fill}},
-			Alignment:  &excelize.Alignment{WrapText: true, Vertical: "top", Horizontal: horizontal},
-			Protection: &excelize.Protection{Locked: true}}
-	}
-	grey := func(horizontal string) *excelize.Style {
-		return &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10, Color: "7A7A7A", Italic: true},
-			Alignment: &excelize.Alignment{Vertical: "top", Horizontal: horizontal}, Protection: &excelize.Protection{Locked: false}}
-	}
-	title := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 14, Bold: true}, Protection: &excelize.Protection{Locked: true}}
-	prose := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10}, Protection: &excelize.Protection{Locked: true},
-		Alignment: &excelize.Alignment{WrapText: true, Vertical: "top"}}
-	term := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10, Bold: true}, Protection: &excelize.Protection{Locked: true},
-		Alignment: &excelize.Alignment{Vertical: "top"}}
-	// In a fixed order: the numbers of the styles stand in the file.
-	for _, one := range []struct {
-		name  string
-		style *excelize.Style
-	}{
-		{"required", head(true, "D2D2D2", "left")}, {"optional", head(false, "EFEFEF", "left")},
-		{"required number", head(true, "D2D2D2", "right")}, {"optional number", head(false, "EFEFEF", "right")},
-		{"text", bodyStyle("@", "left")}, {"number", bodyStyle("", "right")}, {"date", bodyStyle("yyyy-mm-dd", "left")},
-		{"example", grey("left")}, {"example number", grey("right")}, {"title", title}, {"prose", prose}, {"term", term},
-	} {
-		id, err := b.book.NewStyle(one.style)
-		b.do(err)
-		b.style[one.name] = id
-	}
-}
-
-// bodyStyle is the look of a cell to be filled in.
-func bodyStyle(format, horizontal string) *excelize.Style {
-	s := &excelize.Style{Font: &excelize.Font{Family: "Arial", Size: 10},
-		Alignment: &excelize.Alignment{Vertical: "top", Horizontal: horizontal}, Protection: &excelize.Protection{Locked: false}}
-	if format != "" {
-		s.CustomNumFmt = &format
-	}
-	return s
-}
-
-func (k cellKind) style() string { return [...]string{"text", "number", "date"}[k] }
-
 // sheet writes one table.
 func (b *workbookBuilder) sheet(p sheetPlan) {
 	_, err := b.book.NewSheet(p.name)
@@ -148,16 +102,16 @@ func (b *workbookBuilder) sheet(p sheetPlan) {
 	row := 1
 	for i, c := range p.columns {
 		letters := columnLetters(i + 1)
-		b.do(b.book.SetColStyle(p.name, letters, b.style[c.kind.style()]))
+		b.do(b.book.SetColStyle(p.name, letters, b.look(role{kind: c.kind, decimals: -1})))
 		b.do(b.book.SetColWidth(p.name, letters, letters, c.width))
 	}
 	if last := len(p.columns); last < 256 {
-		b.do(b.book.SetColStyle(p.name, columnLetters(last+1)+":"+columnLetters(256), b.style["text"]))
+		b.do(b.book.SetColStyle(p.name, columnLetters(last+1)+":"+columnLetters(256), b.look(role{decimals: -1})))
 	}
 	// The first cell of the line is repeated on every page; the text is not.
 	b.text(p.name, 1, row, "#")
 	b.text(p.name, 2, row, p.guide)
-	b.do(b.book.SetCellStyle(p.name, "A1", cellName(len(p.columns), row), b.style["example"]))
+	b.do(b.book.SetCellStyle(p.name, "A1", cellName(len(p.columns), row), b.look(role{grey: true})))
 	row++
 	header := row
 	for i, c := range p.columns {
@@ -183,7 +137,12 @@ func (b *workbookBuilder) sheet(p sheetPlan) {
 			if n := row - header - 1; i == 1 && n < len(p.labels) {
 				kind = p.labels[n].kind
 			}
-			b.value(p.name, i+1, row, text, kind, r.grey)
+			b.value(p.name, i+1, row, text, role{kind, r.grey, i == 1 && len(p.labels) > 0, -1})
+		}
+	}
+	for i, r := range p.rows {
+		if lines := linesOf(strings.Join(r.cells, " "), 40); len(p.labels) > 0 && lines > 2 {
+			b.do(b.book.SetRowHeight(p.name, header+1+i, float64(13*lines+5)))
 		}
 	}
 	if p.fillIn {
@@ -198,7 +157,7 @@ func (b *workbookBuilder) sheet(p sheetPlan) {
 func headerHeight(columns []columnPlan) float64 {
 	most := 1
 	for _, c := range columns {
-		most = max(most, linesOf(c.header, c.width-3))
+		most = max(most, linesOf(c.header, c.width-2))
 	}
 	return float64(13*most + 5)
 }
@@ -225,38 +184,30 @@ func (b *workbookBuilder) labels(p sheetPlan, header int) {
 			look = "required"
 		}
 		b.do(b.book.SetCellStyle(p.name, cellName(1, row), cellName(1, row), b.style[look]))
-		b.do(b.book.SetCellStyle(p.name, cellName(2, row), cellName(2, row), b.style[item.kind.style()]))
 		b.note(p.name, cellName(1, row), item.note)
 		b.check(p.name, item, cellName(2, row), cellName(2, row))
 	}
 }
 
 // value writes one cell of a row.
-func (b *workbookBuilder) value(sheet string, column, row int, text string, kind cellKind, grey bool) {
+func (b *workbookBuilder) value(sheet string, column, row int, text string, as role) {
 	cell := cellName(column, row)
-	look := kind.style()
-	if grey {
-		look = "example"
-		if kind == numberCell {
-			look = "example number"
-		}
-	}
-	b.do(b.book.SetCellStyle(sheet, cell, cell, b.style[look]))
 	switch {
 	case text == "":
-	case kind == numberCell && !grey && typedDecimals(text) >= 0:
+	case as.kind == numberCell && !as.grey && typedDecimals(text) >= 0:
 		// SetCellDefault keeps all digits; the calls for numbers cut them at 15.
 		v, _ := units.ParseNumber(text, false)
 		b.do(b.book.SetCellDefault(sheet, cell, numberText(v)))
 		if numberText(v) != text {
-			b.do(b.book.SetCellStyle(sheet, cell, cell, b.decimals(typedDecimals(text))))
+			as.decimals = typedDecimals(text)
 		}
-	case kind == dateCell && isTypedDate(text) && !grey:
+	case as.kind == dateCell && !as.grey && isTypedDate(text):
 		day, _ := time.Parse(time.DateOnly, text)
 		b.do(b.book.SetCellInt(sheet, cell, int64(day.Sub(dayZero)/(24*time.Hour))))
 	default:
 		b.text(sheet, column, row, text)
 	}
+	b.do(b.book.SetCellStyle(sheet, cell, cell, b.look(as)))
 }
 
 // dayZero is the day from which a workbook counts, for days from March 1900 on.
@@ -274,17 +225,6 @@ func typedDecimals(text string) int {
 		return len(decimals)
 	}
 	return -1
-}
-
-// decimals returns the style of a number with so many decimals: 0.30 stays 0.30.
-func (b *workbookBuilder) decimals(n int) int {
-	name := fmt.Sprintf("number of %d decimals", n)
-	if _, ok := b.style[name]; !ok {
-		id, err := b.book.NewStyle(bodyStyle("0."+strings.Repeat("0", n), "right"))
-		b.do(err)
-		b.style[name] = id
-	}
-	return b.style[name]
 }
 
 func isTypedDate(text string) bool {
