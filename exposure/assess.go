@@ -28,6 +28,12 @@ func (m *Model) Assess(ctx context.Context, o AssessOptions) (*Assessment, error
 	if a.Zones, err = m.Zones(ctx, ZoneQuery{ResolutionM: o.ResolutionM}); err != nil {
 		return nil, err
 	}
+	if a.Sections, err = m.housingSections(ctx, a.Distances, o.ResolutionM); err != nil {
+		return nil, err
+	}
+	if a.Grids, err = m.Grids(ctx, a.Zones, a.Sections); err != nil {
+		return nil, err
+	}
 	a.Profiles = m.Profiles(a.Distances)
 	return a, ctx.Err()
 }

@@ -133,6 +133,7 @@ type Distance struct {
 type Zone struct {
 	Surface       string       `json:"surface"`
 	Section       *Section     `json:"section,omitempty"`
+	Through       string       `json:"through,omitempty"` // the housing a section was laid through
 	Class         string       `json:"class"`
 	Share         float64      `json:"share"`
 	Level         string       `json:"level,omitempty"` // "10 V/m" where a field level was asked in place of a share
@@ -234,10 +235,14 @@ type Assessment struct {
 	Warnings  []Warning     `json:"warnings"`
 	Notices   []string      `json:"notices"` // what the assessor must know that belongs to no cell
 	Inputs    []InputFile   `json:"inputs"`
-	// Profiles are ratio against distance along each housing's main beams.
-	Profiles []Profile `json:"profiles,omitempty"`
-	// Grids are sampled ratios for the contour lines of figures.
+	// Sections are the boundaries on a vertical plane through each housing, along
+	// its first row's azimuth.
+	Sections []Zone `json:"sections,omitempty"`
+	// Grids are sampled ratios for contour lines, one for each zone and each
+	// section.
 	Grids []RatioGrid `json:"-"`
+	// Profiles are ratio against distance along each row's main beam.
+	Profiles []Profile `json:"profiles,omitempty"`
 }
 
 // Profile is the exposure ratio along a ray, for a figure. Each is a row alone.

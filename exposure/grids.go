@@ -1,0 +1,145 @@
+package exposure
+
+import (
+	"context"
+	"math"
+	"sync"
+	"sync/atomic"
+)
+
+// gridSamples is the number of samples of a ratio grid along its longer side.
+const gridSamples = 90
+
+// Grids samples the exposure ratio for the contour lines of each zone given. A
+// grid is a picture: no boundary and no verdict rests on it.
+func (m *Model) Grids(ctx context.Context, lists ...[]Zone) ([]RatioGrid, error) {
+	var out []RatioGrid
+	for _, zones := range lists {
+		for i := range zones {
+			z := &zones[i]
+			r := m.rule(z.Class)
+			if r == nil {
+				continue // a plain field level has no class to draw
+			}
+			q := ZoneQuery{Section: z.Section}
+			if z.Section == nil {
+				q.Surfaces = []string{z.Surface}
+			}
+			regions, err := m.regions(&q)
+			if err != nil {
+				return nil, err
+			}
+			g, err := m.grid(ctx, &regions[0], r)
+			if err != nil {
+				return nil, err
+			}
+			g.Surface, g.Section = z.Surface, z.Section
+			out = append(out, g)
+		}
+	}
+	return out, ctx.Err()
+}
+
+// grid samples one class over the extent of a region, over the body heights as
+// the class compares them.
+func (m *Model) grid(ctx context.Context, g *region, r *rule) (RatioGrid, error) {
+	e := m.evaluator(r, nil, g.factor, g.frame, 1)
+	x0, y0, x1, y1 := math.Inf(1), math.Inf(1), math.Inf(-1), math.Inf(-1)
+	for _, v := range g.rings[0] {
+		x0, x1 = math.Min(x0, v[0]), math.Max(x1, v[0])
+		y0, y1 = math.Min(y0, v[1]), math.Max(y1, v[1])
+	}
+	step := math.Max(x1-x0, y1-y0) / (gridSamples - 1)
+	out := RatioGrid{Class: r.class, X0: x0, Y0: y0, Step: step, NX: int(math.Ceil((x1-x0)/step-1e-9)) + 1, NY: int(math.Ceil((y1-y0)/step-1e-9)) + 1}
+	out.Values = make([]Number, out.NX*out.NY)
+	mean := r.anyMean && !g.peak
+	var next atomic.Int64
+	var group sync.WaitGroup
+	for w := 0; w < m.options.Workers; w++ {
+		group.Add(1)
+		go func() {
+			defer group.Done()
+			for {
+				j := int(next.Add(1)) - 1
+				if j >= out.NY || ctx.Err() != nil {
+					return
+				}
+				for i := 0; i < out.NX; i++ {
+					out.Values[j*out.NX+i] = Number(e.sample(x0+float64(i)*step, y0+float64(j)*step, g.from, g.to, mean))
+				}
+			}
+		}()
+	}
+	group.Wait()
+	return out, ctx.Err()
+}
+
+// sample is the ratio over a body at three heights: the largest of foot, middle
+// and head, or the three-point Gauss mean.
+func (e *evaluator) sample(x, y, from, to float64, mean bool) float64 {
+	if to <= from {
+		_, v := e.at(Point{X: x, Y: y, Z: from})
+		return v
+	}
+	mid, half := (from+to)/2, (to-from)/2
+	var best groupRatios
+	if mean {
+		for k, u := range [3]float64{-0.774596669241483, 0, 0.774596669241483} {
+			by, _ := e.at(Point{X: x, Y: y, Z: mid + u*half})
+			for g := 0; g < e.ng; g++ {
+				best[g] += by[g] * [3]float64{5. / 18, 8. / 18, 5. / 18}[k]
+			}
+		}
+	} else {
+		for _, u := range [3]float64{-1, 0, 1} {
+			by, _ := e.at(Point{X: x, Y: y, Z: mid + u*half})
+			for g := 0; g < e.ng; g++ {
+				best[g] = math.Max(best[g], by[g])
+			}
+		}
+	}
+	v, _ := best.largest(e.ng)
+	return v
+}
+
+// housingSections lays a vertical plane through each housing along its first
+// row's azimuth, long enough to show the whole boundary, and bounds every class
+// on it.
+func (m *Model) housingSections(ctx context.Context, distances []Distance, resolution float64) ([]Zone, error) {
+	far := map[string]float64{}
+	for _, d := range distances {
+		if d.Housing != "" {
+			far[d.Housing] = math.Max(far[d.Housing], d.DistanceM)
+		}
+	}
+	var out []Zone
+	seen := map[string]bool{}
+	for i := range m.sources {
+		s := m.sources[i].src
+		if s.Housing == "" || seen[s.Housing] {
+			continue
+		}
+		seen[s.Housing] = true
+		sin, cos := math.Sincos(s.Pose.AzimuthRad)
+		back, ahead := 5+0.3*far[s.Housing], 5+1.3*far[s.Housing]
+		section := Section{
+			X1M: s.Position.X - back*sin, Y1M: s.Position.Y - back*cos,
+			X2M: s.Position.X + ahead*sin, Y2M: s.Position.Y + ahead*cos,
+			FromZM: math.Floor(s.Position.Z - 3 - 0.5*far[s.Housing]), ToZM: math.Ceil(s.Position.Z + 3 + 0.5*far[s.Housing]),
+		}
+		for _, f := range m.site.Surfaces {
+			if f.Z < s.Position.Z {
+				section.FromZM = math.Min(section.FromZM, math.Max(math.Floor(f.Z)-1, math.Floor(s.Position.Z-3-far[s.Housing])))
+			}
+		}
+		zones, err := m.Zones(ctx, ZoneQuery{Section: &section, ResolutionM: resolution})
+		if err != nil {
+			return nil, err
+		}
+		for k := range zones {
+			zones[k].Through = s.Housing
+		}
+		out = append(out, zones...)
+	}
+	return out, nil
+}
