@@ -147,14 +147,8 @@ func (m *chart) antennasIn(d SectionData, ux, uy float64) (outside int) {
 		ax := s.Pose.Axes()
 		perM := m.Box.W() / (m.X1 - m.X0)
 		// Half the body, as its shadow on the plane.
-		h := s.LengthM / 2 * perM
+		h := math.Max(s.LengthM, s.DiameterM) / 2 * perM
 		ox, oz := h*(ax.Up.X*ux+ax.Up.Y*uy), h*ax.Up.Z
-		if s.DiameterM > 0 {
-			ox, oz = ox/h*s.DiameterM/2*perM, oz/h*s.DiameterM/2*perM
-			if h == 0 {
-				ox, oz = s.DiameterM/2*perM*(ax.Up.X*ux+ax.Up.Y*uy), s.DiameterM/2*perM*ax.Up.Z
-			}
-		}
 		q := mark{centre: c, low: pt{c[0] - ox, c[1] - oz}, high: pt{c[0] + ox, c[1] + oz}, tip: c}
 		if !round(s) {
 			bx, bz := ax.Boresight.X*ux+ax.Boresight.Y*uy, ax.Boresight.Z
