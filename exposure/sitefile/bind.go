@@ -414,7 +414,7 @@ func (b *binder) read(t *bound, k int, row *gridRow, i int) cell {
 		b.faults = append(b.faults, t.grid.fault(*row, i, t.headers[k], format, args...))
 		return cell{state: bad, row: row, i: i}
 	}
-	if t.broken[k] {
+	if t.broken[k] && text != "" {
 		return cell{state: bad, row: row, i: i}
 	}
 	if text == "" {

@@ -181,7 +181,7 @@ func (l *loader) statedXY(r *record) stated {
 		return stated{broken: true}
 	}
 	p := exposure.GeodeticToSite(l.about, r.value("latitude")*180/math.Pi, r.value("longitude")*180/math.Pi, 0)
-	if d := math.Hypot(p.X, p.Y); d > farFromSiteM {
+	if d := p.Norm(); d > farFromSiteM {
 		l.fault(r, "latitude", "the position lies %.0f km from the site; check latitude and longitude", d/1000)
 		return stated{broken: true}
 	}

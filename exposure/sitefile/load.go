@@ -184,7 +184,7 @@ func (l *loader) workbook(name string, data []byte) {
 		}
 	}
 	if !isWorkbook(name, data) {
-		l.faults = append(l.faults, Fault{File: name, Message: "this is neither a folder nor a workbook; give a site folder or an .xlsx file"})
+		l.fatal = Faults{{File: name, Message: "this is neither a folder nor a workbook; give a site folder or an .xlsx file"}}
 		return
 	}
 	l.sheets(name, data, nil)
@@ -218,7 +218,7 @@ func (l *loader) folder() {
 		}
 	}
 	if byTable["antennas"] == "" && byTable["site"] == "" && len(workbooks) > 0 {
-		l.faults = append(l.faults, Fault{File: "antennas.csv", Message: fmt.Sprintf("the folder has no table antennas; to read the workbook in it, give %s by name", workbooks[0])})
+		l.fatal = Faults{{File: "antennas.csv", Message: fmt.Sprintf("the folder has no table antennas; to read the workbook in it, give %s by name", workbooks[0])}}
 		return
 	}
 	for _, t := range schema {

@@ -22,10 +22,8 @@ type outline orb.Polygon
 func parseOutline(text string) (outline, error) {
 	p, err := wkt.UnmarshalPolygon(text)
 	switch {
-	case errors.Is(err, wkt.ErrIncorrectGeometry):
-		return nil, errors.New("this is WKT but no POLYGON; write one such as POLYGON((0 0, 30 0, 30 20, 0 20, 0 0))")
 	case err != nil:
-		return nil, errors.New("this is not a WKT polygon; write one such as POLYGON((0 0, 30 0, 30 20, 0 20, 0 0))")
+		return nil, errors.New("this is not a WKT POLYGON; write one such as POLYGON((0 0, 30 0, 30 20, 0 20, 0 0))")
 	case len(p) == 0:
 		return nil, errors.New("the polygon is empty; write at least three corners and the first again")
 	}
@@ -75,13 +73,31 @@ func checkRing(r orb.Ring) error {
 	if n := len(slices.Compact(distinct)); n < 3 {
 		return fmt.Errorf("has %d different corners; an area needs at least 3", n)
 	}
+	if onOneLine(r) {
+		return errors.New("has no area; its corners lie on one line")
+	}
 	if at, ok := selfCrossing(r); ok {
 		return fmt.Errorf("crosses or touches itself near (%.6g %.6g); go round it once", at[0], at[1])
 	}
-	if math.Abs(planar.Area(r)) == 0 {
-		return errors.New("has no area; its corners lie on one line")
+	if planar.Area(r) == 0 {
+		return errors.New("has no area that can be told from zero; write it in metres")
 	}
 	return nil
+}
+
+func onOneLine(r orb.Ring) bool {
+	a, far := r[0], r[0]
+	for _, p := range r {
+		if math.Hypot(p[0]-a[0], p[1]-a[1]) > math.Hypot(far[0]-a[0], far[1]-a[1]) {
+			far = p
+		}
+	}
+	for _, p := range r {
+		if (far[0]-a[0])*(p[1]-a[1]) != (far[1]-a[1])*(p[0]-a[0]) {
+			return false
+		}
+	}
+	return true
 }
 
 // selfCrossing finds two sides of a ring that meet elsewhere than at the corner

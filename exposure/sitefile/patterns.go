@@ -147,16 +147,16 @@ func (l *loader) readPattern(key patternKey) *patternFile {
 		return &patternFile{fault: key.file + ": " + err.Error()}
 	}
 	for _, w := range f.Warnings {
-		l.warnOnce(key.file, w)
+		l.warnOnce(key.file, "", w)
 	}
 	for _, w := range f.Forgiven {
-		l.warnOnce(key.file, w)
+		l.warnOnce(key.file, "", w)
 	}
 	return &patternFile{file: f}
 }
 
-func (l *loader) warnOnce(place, message string) {
-	w := exposure.Warning{Place: place, Message: message}
+func (l *loader) warnOnce(place, column, message string) {
+	w := exposure.Warning{Place: place, Column: column, Message: message}
 	for _, other := range l.warnings {
 		if other == w {
 			return

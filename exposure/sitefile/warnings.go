@@ -33,6 +33,7 @@ func (l *loader) warnSite(s *exposure.Site) {
 		l.warnLength(src)
 		l.warnBelow(src)
 	}
+	l.warnDirectivity(s.Sources)
 }
 
 // warnUnconfirmed lists the rows whose data nobody stands behind.
