@@ -2,10 +2,12 @@ package reports
 
 import (
 	"bytes"
+	"cmp"
 	"context"
 	"fmt"
 	"image/png"
 	"runtime"
+	"slices"
 	"strings"
 
 	"example.org/standclear/exposure"
@@ -24,7 +26,7 @@ type picture struct {
 
 // mostProfiles bounds the figures of ratio against distance; the workbook's
 // table has every profile.
-const mostProfiles = 24
+const mostProfiles = 12
 
 // draw makes the figures of an assessment: a plan of each surface, one more
 // with contour lines of the ratio where these were computed, and the ratio
@@ -67,9 +69,6 @@ func draw(ctx context.Context, a *exposure.Assessment) ([]picture, error) {
 		jobs = append(jobs, job{fmt.Sprintf("section-%02d-%s", sections, slug(z.Class)), func() (*figure.Figure, error) { return figure.Section(data) }})
 	}
 	for i, lines := range beams(a) {
-		if i == mostProfiles {
-			break
-		}
 		data := figure.ProfileData{SiteName: a.SiteName, Lines: lines, Classes: a.Classes, Marks: a.Distances}
 		for k := range a.Sources {
 			if a.Sources[k].Antenna == lines[0].Antenna {
@@ -113,28 +112,56 @@ func render(name string, f *figure.Figure) (picture, error) {
 	return p, err
 }
 
-// beams groups the profiles of one antenna and direction, one line a class.
+// beams picks the profiles to draw: of each housing the row whose boundary
+// reaches farthest, one line a class. Rows of one housing look the same way, and
+// a figure for each would bury the one that matters.
 func beams(a *exposure.Assessment) [][]exposure.Profile {
-	type key struct {
-		antenna            string
-		azimuth, elevation float64
+	reach := map[string]float64{}
+	for _, d := range a.Distances {
+		if d.Antenna != "" {
+			reach[d.Antenna] = max(reach[d.Antenna], d.DistanceM)
+		}
 	}
-	at := map[key]int{}
-	var out [][]exposure.Profile
+	housing := map[string]string{}
+	if a.Site != nil {
+		for _, s := range a.Site.Sources {
+			housing[s.ID] = s.Housing
+		}
+	}
+	type beam struct {
+		antenna string
+		lines   []exposure.Profile
+	}
+	at := map[string]int{}
+	var out []beam
 	for _, p := range a.Profiles {
 		if !drawable(p) {
 			continue
 		}
-		k := key{p.Antenna, p.AzimuthDeg, p.ElevationDeg}
-		i, ok := at[k]
-		if !ok {
-			i = len(out)
-			at[k] = i
-			out = append(out, nil)
+		key := "housing " + housing[p.Antenna]
+		if housing[p.Antenna] == "" {
+			key = "row " + p.Antenna
 		}
-		out[i] = append(out[i], p)
+		i, ok := at[key]
+		switch {
+		case !ok:
+			at[key] = len(out)
+			out = append(out, beam{p.Antenna, []exposure.Profile{p}})
+		case out[i].antenna == p.Antenna:
+			out[i].lines = append(out[i].lines, p)
+		case reach[p.Antenna] > reach[out[i].antenna]:
+			out[i] = beam{p.Antenna, []exposure.Profile{p}}
+		}
 	}
-	return out
+	if len(out) > mostProfiles {
+		slices.SortStableFunc(out, func(x, y beam) int { return cmp.Compare(reach[y.antenna], reach[x.antenna]) })
+		out = out[:mostProfiles]
+	}
+	lines := make([][]exposure.Profile, len(out))
+	for i := range out {
+		lines[i] = out[i].lines
+	}
+	return lines
 }
 
 // drawable reports whether a profile has anything for a logarithmic axis.
