@@ -59,7 +59,7 @@ func decode(data []byte, windows1252 bool) (text, fault string) {
 		}
 		return "", fmt.Sprintf("line %d has a NUL byte, so the file is damaged or not text; save it as UTF-8", 1+bytes.Count(data[:i], []byte("\n")))
 	}
-	if windows1252 {
+	if windows1252 && !utf8.Valid(data) {
 		out, err := charmap.Windows1252.NewDecoder().Bytes(data)
 		if err != nil {
 			return "", "the file is not Windows-1252 text; save it as UTF-8"
@@ -134,6 +134,8 @@ func delimiter(text string) (comma rune, skip int, f *Fault) {
 // taken off its start.
 func (g *grid) records(text string, before int, comma rune) (faults Faults) {
 	lines := strings.Split(text, "\n")
+	width := 0 // cells of the header row, trailing blank ones included
+	var short []int
 	r := csv.NewReader(strings.NewReader(text))
 	r.Comma = comma
 	r.FieldsPerRecord = -1
@@ -142,6 +144,10 @@ func (g *grid) records(text string, before int, comma rune) (faults Faults) {
 	for {
 		cells, err := r.Read()
 		if errors.Is(err, io.EOF) {
+			if len(short) > 0 {
+				g.warnings = append(g.warnings, exposure.Warning{Place: g.place(short[0]), Message: fmt.Sprintf(
+					"%s before the header does: the cells that are not there count as blank; check that none is missing further in front", rowsEnd(short))})
+			}
 			return faults
 		}
 		var pe *csv.ParseError
@@ -179,8 +185,24 @@ func (g *grid) records(text string, before int, comma rune) (faults Faults) {
 			}
 			cells[i] = strings.TrimSpace(c)
 		}
-		g.add(row)
+		before := len(g.rows)
+		if g.add(row); len(g.rows) == before {
+			continue
+		}
+		if before == 0 {
+			width = len(cells)
+		} else if len(cells) < width {
+			short = append(short, row.number)
+		}
 	}
+}
+
+// rowsEnd is the start of a sentence about rows.
+func rowsEnd(rows []int) string {
+	if len(rows) == 1 {
+		return "the row ends"
+	}
+	return fmt.Sprintf("this row and %d more end", len(rows)-1)
 }
 
 // swallowed reports whether a quoted cell with line breaks looks as if it held

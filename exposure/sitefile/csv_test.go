@@ -93,6 +93,17 @@ func TestWindows1252OnRequest(t *testing.T) {
 	g, faults := readCSV("places.csv", "places", []byte("id,class\nd\xe9p\xf4t,public\n"), true)
 	require.Empty(t, faults)
 	assert.Equal(t, "dépôt", g.rows[1].cell(0))
+	g, faults = readCSV("places.csv", "places", []byte("id,class\ndépôt,public\n"), true)
+	require.Empty(t, faults)
+	assert.Equal(t, "dépôt", g.rows[1].cell(0), "a file that is UTF-8 stays it")
+}
+
+func TestRowsThatEndEarly(t *testing.T) {
+	g, faults := readCSV("places.csv", "places", []byte("id,x [m],y [m],class\n# remark\na,1,2,public\nb,1,public\nc,1\n"), false)
+	require.Empty(t, faults)
+	require.Len(t, g.warnings, 1)
+	assert.Equal(t, "places.csv:4", g.warnings[0].Place)
+	assert.Equal(t, "this row and 1 more end before the header does: the cells that are not there count as blank; check that none is missing further in front", g.warnings[0].Message)
 }
 
 func TestRowsKeepTheirLines(t *testing.T) {

@@ -3,6 +3,7 @@ package sitefile
 import (
 	"fmt"
 	"runtime"
+	"strings"
 
 	"golang.org/x/sync/errgroup"
 
@@ -11,7 +12,7 @@ import (
 )
 
 // directivityKey tells what has been integrated: a pattern file, or a
-// two-beamwidth shape, which keeps its directivity when it is tilted.
+// two-beamwidth shape, which keeps its directivity (near enough) when it is tilted.
 type directivityKey struct {
 	file patternKey
 	n    [3]float64
@@ -36,7 +37,7 @@ func (l *loader) warnDirectivity(sources []exposure.Source) {
 		key := directivityKey{gain: s.Gain}
 		switch s.PatternKind {
 		case exposure.PatternFile:
-			key.file = patternKey{s.PatternName, s.FrequencyHz, antenna.VerticalSense(s.Row.Cell("vertical cut"))}
+			key.file = patternKey{s.PatternName, s.FrequencyHz, antenna.VerticalSense(strings.ToLower(s.Row.Cell("vertical cut")))}
 			f := l.patterns[key.file]
 			if f == nil || f.file == nil || f.file.Envelope {
 				continue

@@ -109,6 +109,7 @@ type loader struct {
 	grids   []*grid
 	tables  map[string]*bound
 	files   []exposure.InputFile
+	book    string // the workbook that holds the site, "" for a folder
 	fatal   error
 
 	about    exposure.About
@@ -164,8 +165,13 @@ func (l *loader) sheets(file string, data []byte, tables []string) {
 	l.record(file, data)
 	grids, faults, warnings := readWorkbook(file, data, tableNames())
 	l.faults = append(l.faults, faults...)
-	if tables == nil {
-		l.warnings = append(l.warnings, warnings...)
+	for _, w := range warnings {
+		own := func(table string) bool {
+			return w.Place == placeOf(file, table, "", 0) || strings.HasPrefix(w.Place, placeOf(file, table, "", 0)+"!")
+		}
+		if tables == nil || slices.ContainsFunc(tables, own) {
+			l.warnings = append(l.warnings, w)
+		}
 	}
 	for _, g := range grids {
 		if tables == nil || slices.Contains(tables, g.table) {
@@ -187,6 +193,7 @@ func (l *loader) workbook(name string, data []byte) {
 		l.fatal = Faults{{File: name, Message: "this is neither a folder nor a workbook; give a site folder or an .xlsx file"}}
 		return
 	}
+	l.book = name
 	l.sheets(name, data, nil)
 }
 
@@ -415,25 +422,15 @@ func (l *loader) site() (*exposure.Site, error) {
 	return s, nil
 }
 
-// inWorkbook reports whether the tables come from a workbook, and which.
-func (l *loader) inWorkbook() string {
-	for _, f := range l.files {
-		if strings.EqualFold(path.Ext(f.Name), ".xlsx") && f.Name != filepath.Base(l.options.LimitsFile) {
-			return f.Name
-		}
-	}
-	return ""
-}
-
 func (l *loader) fileOf(table string) string {
-	if w := l.inWorkbook(); w != "" {
-		return w
+	if l.book != "" {
+		return l.book
 	}
 	return table + ".csv"
 }
 
 func (l *loader) sheetOf(table string) string {
-	if l.inWorkbook() != "" {
+	if l.book != "" {
 		return table
 	}
 	return ""

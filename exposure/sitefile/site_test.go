@@ -262,6 +262,19 @@ func TestWarnings(t *testing.T) {
 	}
 }
 
+func TestWarningsOfOneRow(t *testing.T) {
+	panel := []string{"pattern", "sector", "gain [dBi]", "17", "horizontal beamwidth [deg]", "65", "vertical beamwidth [deg]", "7"}
+	for want, pairs := range map[string][]string{
+		`antennas.csv:2: power: the row "A1" radiates no power and counts for nothing; write unknown where the power is not known`:                  {"power [W]", "0"},
+		`antennas.csv:2: length: a panel of 0.1 m is shorter than half a wavelength (0.1666 m); check length and frequency`:                         append(panel, "length [m]", "0.1"),
+		`antennas.csv:2: gain: a gain of 25.0 dBi is 6.7 dB from the 18.3 dBi that beamwidths of 65 and 7 deg suggest; check both`:                  append(panel, "length [m]", "2", "gain [dBi]", "25"),
+		`antennas.csv:2: pattern: the pattern "sector" is a reference pattern from 400 MHz to 6 GHz; at 98 MHz nobody has held it against antennas`: append(panel, "length [m]", "6", "frequency [MHz]", "98"),
+		`antennas.csv:2: efficiency: the gain of 36.00 dBi implies an efficiency of 0.514, not 0.7; the near field uses the one stated`:             {"pattern", "dish", "gain [dBi]", "36", "diameter [m]", "1.2", "efficiency", "0.7", "frequency [MHz]", "7000"},
+	} {
+		assert.Contains(t, warningLines(mustLoad(t, antennaRow(pairs...))), want)
+	}
+}
+
 func TestTwoLimitTables(t *testing.T) {
 	_, err := loadFiles(small(), Options{LimitsFile: "nowhere.csv"})
 	assert.ErrorContains(t, err, "nowhere.csv: there is no such file; check its name")

@@ -30,6 +30,10 @@ func (l *loader) warnSite(s *exposure.Site) {
 			}
 			l.warn(rowPlace(src.Row), "operator", "the operators table has no %q; %s", src.Operator, hint)
 		}
+		if !src.Power.Unknown && src.Power.ThermalW() == 0 {
+			l.warn(rowPlace(src.Row), "power", "the row %q radiates no power and counts for nothing; write unknown where the power is not known", src.ID)
+		}
+		l.warnPanel(src)
 		l.warnLength(src)
 		l.warnBelow(src)
 	}
@@ -54,6 +58,26 @@ func (l *loader) warnUnconfirmed(column, what string, lacks func(*exposure.Sourc
 		list = fmt.Sprintf("%s and %d more", strings.Join(ids[:20], ", "), len(ids)-20)
 	}
 	l.warn(l.tables["antennas"].grid.place(0), column, "%s %s", what, list)
+}
+
+// warnPanel warns where the figures of a panel do not fit each other.
+func (l *loader) warnPanel(s *exposure.Source) {
+	switch s.PatternKind {
+	case exposure.PatternBeamwidth, exposure.PatternSector, exposure.PatternFile, exposure.PatternActive:
+	default:
+		return
+	}
+	if s.LengthM > 0 {
+		if err := antenna.CheckPanel(s.LengthM, exposure.Wavelength(s.FrequencyHz), s.Elements, s.SpacingM); err != nil {
+			l.warn(rowPlace(s.Row), "length", "%s", err)
+		}
+	}
+	if s.PatternKind == exposure.PatternSector {
+		// The others are integrated.
+		if err := antenna.CheckGain(s.Gain, s.HorizontalBeamwidthRad, s.VerticalBeamwidthRad); err != nil {
+			l.warn(rowPlace(s.Row), "gain", "%s; check both", err)
+		}
+	}
 }
 
 // warnLength names the length that a panel's vertical beamwidth implies where the
