@@ -1,21 +1,135 @@
 package exposure
 
-import "fmt"
+import (
+	"fmt"
+
+	"example.org/standclear/antenna"
+)
 
 // choose sets the emitter of a source by its method column, and says why.
 func (c *compiled) choose(s *Source, ground Ground) error {
-	p := s.place()
+	b := builder{compiled: c, s: s, p: s.place(), lambda: Wavelength(s.FrequencyHz), k: Wavenumber(s.FrequencyHz)}
+	b.why = "as the method column asks"
 	switch s.Method {
-	case MethodFarField, MethodAuto, "":
-		c.em = newFarField(p, s.Pattern, float64(s.Gain))
-		c.method = string(MethodFarField)
-		c.reactive = p.reactive
-		c.why = "as the method column asks"
-		if s.Method != MethodFarField {
-			c.why = "no length or dish is stated that a near-field method could use"
-		}
-	default:
-		return fmt.Errorf("method %q is not one of auto, far field, cylindrical, array, aperture, wire", s.Method)
+	case MethodAuto, "":
+		return b.auto()
+	case MethodFarField:
+		return b.far()
+	case MethodWire:
+		return b.thinWire()
 	}
+	return fmt.Errorf("method %q is not one of auto, far field, cylindrical, array, aperture, wire", s.Method)
+}
+
+// builder makes the emitter of one source.
+type builder struct {
+	*compiled
+	s         *Source
+	p         placement
+	lambda, k float64
+}
+
+// auto chooses by the kind of pattern.
+func (b *builder) auto() error {
+	switch b.s.PatternKind {
+	case PatternDipole:
+		if !b.linear() {
+			b.why = "one wire cannot radiate " + string(b.s.Polarization) + " polarization"
+			return b.far()
+		}
+		b.why = "a half-wave dipole is a wire"
+		return b.thinWire()
+	case PatternMonopole:
+		b.why = "the wire's own fields over perfect ground"
+		return b.thinWire()
+	case PatternShort, PatternLoop:
+		if !b.linear() {
+			b.why = "one small source cannot radiate " + string(b.s.Polarization) + " polarization"
+			return b.far()
+		}
+		b.why = "a small source with all its fields"
+		b.small()
+		return nil
+	}
+	b.why = "no length or dish is stated that a near-field method could use"
+	return b.far()
+}
+
+// set finishes the choice. reactive says whether the method stops at lambda/(2
+// pi).
+func (b *builder) set(em emitter, method string, reactive bool) {
+	b.em, b.method = em, method
+	b.reactive = 0
+	if reactive {
+		b.reactive = b.p.reactive
+	}
+}
+
+func (b *builder) far() error {
+	b.set(newFarField(b.p, b.s.Pattern, float64(b.s.Gain)), string(MethodFarField), true)
 	return nil
+}
+
+// linear reports whether the polarization is one that a single wire can have.
+func (b *builder) linear() bool {
+	return b.s.Polarization == "" || b.s.Polarization == antenna.Vertical || b.s.Polarization == antenna.Horizontal
+}
+
+// along is the line of a wire: antenna-up turned by roll for vertical
+// polarization, the right hand for horizontal.
+func (b *builder) along() rod {
+	if b.s.Polarization == antenna.Horizontal {
+		return rod{b.p.pos, b.p.axes.Right}
+	}
+	return rod{b.p.pos, b.p.axes.Up}
+}
+
+// thinWire is method wire for the patterns that are wires.
+func (b *builder) thinWire() error {
+	var w *wire
+	var err error
+	switch b.s.PatternKind {
+	case PatternMonopole:
+		if b.s.LengthM <= 0 {
+			return fmt.Errorf("a monopole needs its height; fill in length")
+		}
+		b.takesGround = false
+		w, err = newMonopole(b.p, b.k, b.s.LengthM)
+	case PatternShort, PatternDipole:
+		if !b.linear() {
+			return fmt.Errorf("a wire is vertical or horizontal, not %s; turn it with roll, or choose method far field", b.s.Polarization)
+		}
+		length := b.s.LengthM
+		if length == 0 && b.s.PatternKind == PatternShort {
+			b.small()
+			return nil
+		}
+		if length == 0 {
+			length = b.lambda / 2
+			b.p.halfLength = length / 2
+		}
+		w, err = newWire(b.p, b.along(), b.k, length)
+	default:
+		return fmt.Errorf("method wire is for the patterns %s, %s and %s, not for %q", PatternDipole, PatternShort, PatternMonopole, b.s.PatternName)
+	}
+	if err != nil {
+		return err
+	}
+	b.set(w, string(MethodWire), false)
+	return nil
+}
+
+// small is a short dipole or a small loop.
+func (b *builder) small() {
+	line := b.along()
+	loop := b.s.PatternKind == PatternLoop
+	if loop {
+		// The other way round: a loop's axis is vertical where its field is
+		// horizontal, else it faces forward.
+		line.dir = b.p.axes.Boresight
+		if b.s.Polarization == antenna.Horizontal {
+			line.dir = b.p.axes.Up
+		}
+	}
+	b.set(newElementary(b.p, line, b.k, float64(b.s.Gain), loop), string(b.s.PatternKind), false)
 }

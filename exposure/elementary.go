@@ -47,7 +47,7 @@ func (e *elementary) at(q Point) density {
 	}
 	ae, ah, al := e.terms(r2)
 	s := rho * rho / r2
-	return e.order(density{s*ae + z * z / r2 * al, s * ah})
+	return e.order(density{s*ae + z*z/r2*al, s * ah})
 }
 
 func (e *elementary) over(b box) densityRange {

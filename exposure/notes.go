@@ -13,6 +13,7 @@ func Methods() []antenna.MethodNote {
 		list = append(list, antenna.MethodNote(m))
 	}
 	list = append(list, methodNotes...)
+	list = append(list, nearFieldNotes...)
 	return append(list, geodeticNotes...)
 }
 
@@ -207,7 +208,7 @@ var methodNotes = []antenna.MethodNote{
 		Range:   "every pattern and method with bounds",
 		Errs:    "outer line: at most the resolution too far out; never inside the model's own boundary",
 		Source:  "a choice of this project: branch and bound with interval arithmetic (Moore, Interval Analysis, 1966, for the arithmetic)",
-		Check:   "TestOuterEnclosesEveryPointAbove",
+		Check:   "TestNothingAboveOutsideNothingBelowInside",
 	},
 	{
 		ID: "DIST-1", Name: "keep-out distance", Ours: true,

@@ -34,15 +34,15 @@ func (r *rod) ring(b box) ring {
 	z := d.Dot(r.dir)
 	w := d.Sub(r.dir.Scale(z))
 	rho := w.Norm()
-	radial := w
-	if rho > 0 {
-		radial = w.Scale(1 / rho)
-	} else {
-		radial = r.across()
+	h := extent(r.dir, b.h)
+	if rho <= 1e-9*d.Norm() {
+		// Too near the line for a direction of its own.
+		e := r.across()
+		out := math.Hypot(extent(e, b.h), extent(r.dir.Cross(e), b.h))
+		return ring{rho: rho, z: z, zlo: z - h, zhi: z + h, rlo: math.Max(0, rho-out), rhi: rho + out, radius: math.Hypot(out, h)}
 	}
-	// The sideways extent is what is left of the box across line and radius.
-	lateral := r.dir.Cross(radial)
-	a, l, h := extent(radial, b.h), extent(lateral, b.h), extent(r.dir, b.h)
+	radial := w.Scale(1 / rho)
+	a, l := extent(radial, b.h), extent(r.dir.Cross(radial), b.h)
 	g := ring{rho: rho, z: z, zlo: z - h, zhi: z + h, rlo: math.Max(0, rho-a), rhi: math.Sqrt((rho+a)*(rho+a) + l*l)}
 	dr := math.Max(g.rhi-rho, rho-g.rlo)
 	g.radius = math.Sqrt(dr*dr + h*h)

@@ -89,7 +89,7 @@ const groundSkinM = 1e-6
 
 // axisSkin is the distance from the line, in wavelengths, below which the parts
 // that vanish on it are taken as 0.
-const axisSkin = 1e-9
+const axisSkin = 1e-6
 
 // sums returns E_z, rho E_rho and rho H_phi, the common phase of the middle taken
 // out.
@@ -97,10 +97,7 @@ func (e *wire) sums(rho, z float64) (ez, er, h complex128) {
 	up, down := z-e.half, z+e.half
 	r0, r1, r2 := math.Hypot(rho, z), math.Hypot(rho, up), math.Hypot(rho, down)
 	e1, e2 := cmplx.Rect(1, -e.k*(r1-r0)), cmplx.Rect(1, -e.k*(r2-r0))
-	f1, f2, f0 := e1*complex(1/r1, 0), e2*complex(1/r2, 0), complex(0, 0)
-	if e.c2 != 0 {
-		f0 = complex(e.c2/r0, 0)
-	}
+	f1, f2, f0 := e1*complex(1/r1, 0), e2*complex(1/r2, 0), complex(e.c2/r0, 0)
 	return f1 + f2 - f0, complex(up, 0)*f1 + complex(down, 0)*f2 - complex(z, 0)*f0, e1 + e2 - complex(e.c2, 0)
 }
 
@@ -109,7 +106,7 @@ func (e *wire) at(q Point) density {
 	if e.ground && z < -groundSkinM {
 		return density{}
 	}
-	skin := axisSkin * 2 * math.Pi / e.k
+	skin := e.skin()
 	if rho < skin {
 		if math.Abs(z) <= e.half+skin {
 			return density{math.Inf(1), math.Inf(1)}
@@ -117,12 +114,11 @@ func (e *wire) at(q Point) density {
 		ez, _, _ := e.sums(rho, z)
 		return density{E: e.scale * norm2(ez)}
 	}
-	if z == 0 && rho == 0 {
-		return density{math.Inf(1), math.Inf(1)}
-	}
 	ez, er, h := e.sums(rho, z)
 	return density{e.scale * (norm2(ez) + norm2(er)/(rho*rho)), e.scale * norm2(h) / (rho * rho)}
 }
+
+func (e *wire) skin() float64 { return axisSkin * 2 * math.Pi / e.k }
 
 func norm2(c complex128) float64 { return real(c)*real(c) + imag(c)*imag(c) }
 
@@ -141,7 +137,8 @@ func (e *wire) over(b box) densityRange {
 		g.zlo = math.Max(g.zlo, -groundSkinM)
 	}
 	rw, _ := g.fromSegment(e.half)
-	if rw <= 0 {
+	skin := e.skin()
+	if rw <= 2*skin {
 		return unbounded
 	}
 	r0, r1, r2 := g.fromPoint(0), g.fromPoint(e.half), g.fromPoint(-e.half)
@@ -151,31 +148,24 @@ func (e *wire) over(b box) densityRange {
 	// By the current: E_z too is at most that of all pieces together.
 	kr := k * rw
 	whole := e.moment * k / rw * (1 + 3/kr + 3/(kr*kr))
-	byE := whole * math.Min(1, g.rhi/rw)
-	byH := e.moment * g.rhi / (rw * rw) * (k + 1/rw)
+	noise := phaseSlack * k * rhi * (2 + m) / math.Max(g.rlo, skin)
+	byE := whole*math.Min(1, g.rhi/rw) + noise
+	byH := e.moment*g.rhi/(rw*rw)*(k+1/rw) + noise
 
 	s1, s2 := k*spread(e.half, r1, r0), k*spread(e.half, r2, r0)
 	slack := phaseSlack * k * rhi
 	gapH := d*(s1+s2) + slack*(2+m)
 	gapE := d*(s1+1/r1+s2+1/r2) + slack*(2+m)
 	gapZ := d*(s1/r1+1/(r1*r1)+s2/r2+1/(r2*r2)) + slack*(1/r1+1/r2)
-	if m > 0 {
-		if r0 <= 0 {
-			return unbounded
-		}
-		gapE += d * m / r0
-		gapZ += d*m/(r0*r0) + slack*m/r0
-	}
-	if g.rho == 0 && math.Abs(g.z) <= e.half {
-		return unbounded
-	}
+	gapE += d * m / r0
+	gapZ += d*m/(r0*r0) + slack*m/r0
 	ez, er, h := e.sums(g.rho, g.z)
 	zlo, zhi := squares(cmplx.Abs(ez), gapZ, whole)
 	elo, ehi := squares(cmplx.Abs(er), gapE, 2+m)
 	hlo, hhi := squares(cmplx.Abs(h), gapH, 2+m)
 	far := g.rhi * g.rhi
 	out := densityRange{Lo: density{zlo, 0}}
-	if far > 0 && g.rlo > axisSkin*2*math.Pi/k {
+	if g.rlo > skin {
 		out.Lo = density{zlo + elo/far, hlo / far}
 	}
 	if e.ground && g.zlo < 0 {
