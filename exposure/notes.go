@@ -14,6 +14,7 @@ func Methods() []antenna.MethodNote {
 	}
 	list = append(list, methodNotes...)
 	list = append(list, nearFieldNotes...)
+	list = append(list, workNotes...)
 	return append(list, geodeticNotes...)
 }
 
