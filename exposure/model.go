@@ -30,6 +30,7 @@ type compiled struct {
 	reactive    float64 // depth of the region its method does not reach, m
 	takesGround bool    // the ground's field factor applies
 	rot         *rotation
+	caveats     []string // of the method chosen
 	info        SourceInfo
 }
 
@@ -195,6 +196,7 @@ func (s *Source) fillInfo(c *compiled) {
 	if k, ok := s.Pattern.(antenna.Coverage); ok {
 		c.info.Caveats = append(c.info.Caveats, k.Caveats()...)
 	}
+	c.info.Caveats = append(c.info.Caveats, c.caveats...)
 }
 
 // Sources returns what the model makes of each source, in the site's order.

@@ -20,4 +20,12 @@ var nearFieldNotes = []antenna.MethodNote{
 		Source:  "textbook: Balanis, Antenna Theory, 3rd edition (2005), sections 4.5 and 8.2, from memory",
 		Check:   "TestHalfWaveDipoleFields",
 	},
+	{
+		ID: "APERTURE-1", Name: "aperture",
+		Formula: "in front within a diameter of the axis 16 eta P/(pi D^2), as 1/R from D^2/(4 lambda), P G/(4 pi R^2) from 0.6 D^2/lambda; elsewhere the larger of 1/100 of that and the far field by pattern; at most 4 P/A",
+		Range:   "dishes larger than a wavelength; R along the axis in front, the slant distance elsewhere; behind the dish the rule off the axis is a choice of this project",
+		Errs:    "an evenly lit aperture stands up to 14 % above it between D^2/(4 lambda) and twice that, below it elsewhere (by 16 % at 0.6 D^2/lambda); a strongly tapered one can reach 6 P/A on the axis",
+		Source:  "FCC OET Bulletin 65, edition 97-01 (1997), equations 11 to 18; printed results in FCC exhibits SES-LIC-INTR2009-07567 and 0640-EX-ST-2004",
+		Check:   "TestApertureMethodAgainstExhibit",
+	},
 }
