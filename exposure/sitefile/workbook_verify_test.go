@@ -14,6 +14,7 @@ import (
 	"example.org/standclear/exposure/sitefile/demo"
 	"github.com/stretchr/testify/assert"
 	"github.com/stretchr/testify/require"
+	"github.com/xuri/excelize/v2"
 )
 
 // demoGrids reads the CSV tables of the demo site.
@@ -339,4 +340,37 @@ func TestSheetThatReachesTooFar(t *testing.T) {
 		require.Len(t, faults, 1, far.cell)
 		assert.Contains(t, faults[0].Message, "the sheet reaches antennas!"+far.cell, far.cell)
 	}
+}
+
+// FuzzSheet: no sheet, however broken, ends in a panic or in cells without place.
+func FuzzSheet(f *testing.F) {
+	data := typed(f, func(*excelize.File) {}) // small, so that many can be tried
+	const part = "xl/worksheets/sheet1.xml"
+	repack(f, data, func(name, body string) (string, string, bool) {
+		if name == part {
+			f.Add(body)
+		}
+		return name, body, true
+	})
+	f.Add(`<worksheet><sheetData><row r="1"><c r="A1" t="inlineStr"><is><t>id</t></is></c></row></sheetData></worksheet>`)
+	f.Add(`<worksheet><cols><col min="1" hidden="1"/></cols><sheetData><row><c><f>1</f></c></row></sheetData><mergeCells><mergeCell ref="A1:B2"/></mergeCells></worksheet>`)
+	f.Fuzz(func(t *testing.T, body string) {
+		changed := repack(t, data, func(name, old string) (string, string, bool) {
+			if name == part {
+				return name, body, true
+			}
+			return name, old, true
+		})
+		grids, faults, _ := readWorkbook("site.xlsx", changed, tableNames())
+		if len(grids) == 0 && len(faults) == 0 {
+			t.Fatal("neither tables nor faults")
+		}
+		for _, g := range grids {
+			for _, r := range g.rows {
+				if r.number < 1 || r.number > workbookMaxRows || len(r.cells) > workbookMaxColumns {
+					t.Fatalf("%s row %d with %d cells", g.sheet, r.number, len(r.cells))
+				}
+			}
+		}
+	})
 }

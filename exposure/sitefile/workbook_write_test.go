@@ -418,3 +418,57 @@ func listed(t testing.TB, f *excelize.File, checks []*excelize.DataValidation, c
 	}
 	return nil
 }
+
+// TestEveryTableSurvives: the schema's own example row of every table, also of
+// those that the demo site does not have.
+func TestEveryTableSurvives(t *testing.T) {
+	var want []*grid
+	for _, s := range Schema() {
+		g := &grid{table: s.Name, file: s.Name + ".csv"}
+		var header, row []string
+		for _, c := range s.Columns {
+			header, row = append(header, c.Header()), append(row, c.Example)
+		}
+		if s.Vertical {
+			g.add(gridRow{number: 1, cells: []string{"item", "value"}})
+			for i := range header {
+				g.add(gridRow{number: 2 + i, cells: []string{header[i], row[i]}})
+			}
+		} else {
+			g.add(gridRow{number: 1, cells: header})
+			g.add(gridRow{number: 2, cells: row})
+		}
+		want = append(want, g)
+	}
+	var b bytes.Buffer
+	require.NoError(t, writeGrids(&b, want))
+	got, faults, warnings := readWorkbook("site.xlsx", b.Bytes(), tableNames())
+	require.Empty(t, faults)
+	require.Empty(t, warnings)
+	require.Len(t, got, len(want))
+	for i := range want {
+		assert.Equal(t, want[i].table, got[i].table)
+		assert.Equal(t, rowsOf(want[i]), rowsOf(got[i]), want[i].table)
+	}
+}
+
+// TestFaultNamesTheCell: a fault of the shared reader names the cell of a sheet.
+func TestFaultNamesTheCell(t *testing.T) {
+	grids := demoGrids(t)
+	column, cell := -1, ""
+	for _, g := range grids {
+		if g.table == "antennas" {
+			column = slices.Index(g.rows[0].cells, "power [W]")
+			require.GreaterOrEqual(t, column, 0)
+			g.rows[2].cells[column] = "20O"
+			cell = cellName(column+1, 4) // a line of advice, the header, the first row, then this one
+		}
+	}
+	var b bytes.Buffer
+	require.NoError(t, writeGrids(&b, grids))
+	_, err := Load(demoFolder(t, b.Bytes()), Options{})
+	var faults Faults
+	require.ErrorAs(t, err, &faults)
+	require.Len(t, faults, 1)
+	assert.Equal(t, "site.xlsx antennas!"+cell+`: power [W]: "20O" is not a number; write digits only, such as 200`, faults[0].Error())
+}
