@@ -250,3 +250,22 @@ func TestSeriesKeepsItsPeaksWhenThinned(t *testing.T) {
 	assert.Contains(t, fy, -9.0)
 	assert.IsIncreasing(t, fx)
 }
+
+func TestOutermostCrossing(t *testing.T) {
+	// 25/r^2 meets 1 at r = 5, and the interpolation is exact for a power law.
+	var x, y []float64
+	for r := 0.5; r < 40; r *= 1.3 {
+		x, y = append(x, r), append(y, 25/r/r)
+	}
+	at, ok := outermost(x, y)
+	require.True(t, ok)
+	assert.InDelta(t, 5, at, 1e-9)
+	// A dip below 1 and a second lobe above it: the farther crossing counts.
+	at, ok = outermost([]float64{1, 2, 4, 8}, []float64{4, 0.25, 4, 0.25})
+	require.True(t, ok)
+	assert.InDelta(t, 4*math.Sqrt2, at, 1e-9)
+	_, ok = outermost([]float64{1, 2}, []float64{0.5, 0.2})
+	assert.False(t, ok)
+	_, ok = outermost([]float64{1, 2}, []float64{math.NaN(), 0.2})
+	assert.False(t, ok)
+}

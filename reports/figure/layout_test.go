@@ -122,6 +122,12 @@ func drawings() []drawing {
 		{"plan-many-classes", plan(manyClasses())},
 		{"section", func() (*Figure, error) { return Section(sampleSection()) }},
 		{"profile", func() (*Figure, error) { return Profile(sampleProfile()) }},
+		{"profile-without-marks", func() (*Figure, error) {
+			d := sampleProfile()
+			d.Marks = nil
+			d.Source.FresnelM, d.Source.DishFarFieldM, d.Source.FarFieldM = 6.8, 16.4, 54
+			return Profile(d)
+		}},
 		{"levels", func() (*Figure, error) { return Levels(sampleLevels()) }},
 		{"pattern", func() (*Figure, error) { return Pattern(samplePattern(false)) }},
 		{"pattern-polar", func() (*Figure, error) { return Pattern(samplePattern(true)) }},

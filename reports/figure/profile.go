@@ -17,7 +17,8 @@ type ProfileData struct {
 	// Source, when not nil, gives the region distances to mark.
 	Source *exposure.SourceInfo
 	// Marks are keep-out distances along the ray to mark on the limit line;
-	// those of other antennas or directions are passed over.
+	// those of other antennas or directions are passed over. A class without one
+	// is marked where its line meets the limit, with the word "about".
 	Marks   []exposure.Distance
 	Caution string // at the foot; "" = Caution
 }
@@ -102,16 +103,28 @@ func Profile(d ProfileData) (f *Figure, err error) {
 	for _, cv := range curves {
 		c.lines(a.clipped(cv.points()), 0.5, false)
 	}
-	for _, m := range d.Marks {
-		if m.Antenna != first.Antenna || m.Kind != "ray" || m.AzimuthDeg != first.AzimuthDeg || m.ElevationDeg != first.ElevationDeg ||
-			!(m.DistanceM >= a.X0 && m.DistanceM <= a.X1) {
-			continue
+	c.lines(a.clipped([]pt{{a.X0, 1}, {a.X1, 1}}), 0.3, false)
+	mark := func(at float64, text string) {
+		q := a.at(pt{at, 1})
+		if !finite(q) || !b.contains(q) {
+			return
 		}
-		q := a.at(pt{m.DistanceM, 1})
 		p.circle(q, 2.6, true, 255, stroke{width: 0.9})
 		c.box(Box{q[0] - 3, q[1] - 3, q[0] + 3, q[1] + 3}, 2)
-		// Rounded up: a keep-out distance is never printed shorter than it is.
-		tags = append(tags, tag{text: length(math.Ceil(m.DistanceM*100-1e-6)/100) + " m, " + shorten(m.Class, 28), anchor: q, face: labelFace, gap: 4, toward: math.Pi / 4})
+		tags = append(tags, tag{text: text, anchor: q, face: labelFace, gap: 4, toward: math.Pi / 4})
+	}
+	marked := map[string]bool{}
+	for _, m := range d.Marks {
+		if m.Antenna == first.Antenna && m.Kind == "ray" && m.AzimuthDeg == first.AzimuthDeg && m.ElevationDeg == first.ElevationDeg && isFinite(m.DistanceM) {
+			// Rounded up: a keep-out distance is never printed shorter than it is.
+			mark(m.DistanceM, length(math.Ceil(m.DistanceM*100-1e-6)/100)+" m, "+shorten(m.Class, 28))
+			marked[m.Class] = true
+		}
+	}
+	for i, l := range d.Lines {
+		if x, ok := outermost(curves[i].x, curves[i].y); ok && !marked[l.Class] {
+			mark(x, "about "+digits(x, 2)+" m, "+shorten(l.Class, 28))
+		}
 	}
 	a.frame(p.sheet)
 	placed, lost := place(b.grow(-2), tags, c)
@@ -119,6 +132,18 @@ func Profile(d ProfileData) (f *Figure, err error) {
 	p.labels, p.lost = append(p.labels, placed...), append(p.lost, lost...)
 	p.under(b.Y0-axisBeneath-4, entries)
 	return p.foot(title, cautionOr(d.Caution)), nil
+}
+
+// outermost returns where a sampled ratio last falls through 1, in proportion of
+// the logarithms between two samples.
+func outermost(x, y []float64) (float64, bool) {
+	for i := min(len(x), len(y)) - 1; i > 0; i-- {
+		if y[i-1] >= 1 && y[i] < 1 && y[i] > 0 && x[i-1] > 0 && x[i] > x[i-1] {
+			k := math.Log(y[i-1]) / math.Log(y[i-1]/y[i])
+			return x[i-1] * math.Pow(x[i]/x[i-1], k), true
+		}
+	}
+	return 0, false
 }
 
 // regions marks where the reactive region ends and where the far field begins.
@@ -139,11 +164,15 @@ func (p *page) regions(a axes, s *exposure.SourceInfo) []tag {
 		}
 		x := a.at(pt{r.at, a.Y0})[0]
 		p.line([]pt{{x, a.Box.Y0}, {x, a.Box.Y1}}, stroke{width: 0.6, grey: 90, dash: []float64{2, 2}})
-		text := r.text + ", " + digits(r.at, 2) + " m from the body"
+		text := r.text + ", " + digits(r.at, 3) + " m from the body"
 		w := contourFace.width(text)/2 + 4
 		var seats []pt
-		for k := 0; k < 6; k++ {
+		for k := 0; k < 12; k++ {
+			// From the foot upward, then from the top downward.
 			y := a.Box.Y0 + 9 + 11*float64(k)
+			if k >= 6 {
+				y = a.Box.Y1 - 9 - 11*float64(k-6)
+			}
 			sides := []float64{x + w, x - w}
 			if r.left && x-2*w > a.Box.X0 {
 				sides = []float64{x - w, x + w}

@@ -76,10 +76,10 @@ func logTicks(lo, hi float64, n int, label func(float64) string) []tick {
 	return out
 }
 
-// plainOrPower writes 0.001 to 1000 as they are and other values with an
+// plainOrPower writes 0.001 to 100000 as they are and other values with an
 // exponent: the font has no raised figures.
 func plainOrPower(v float64) string {
-	if v >= 0.00099 && v <= 1001 {
+	if v >= 0.00099 && v <= 100001 {
 		return strconv.FormatFloat(v, 'f', -1, 64)
 	}
 	m, e, _ := strings.Cut(strconv.FormatFloat(v, 'e', 0, 64), "e")
