@@ -256,6 +256,9 @@ func noteOf(c ColumnSchema) string {
 	if len(c.Words) > 0 {
 		lines = append(lines, "Or the word "+strings.Join(c.Words, ", ")+".")
 	}
+	if c.Example != "" {
+		lines = append(lines, "Example: "+c.Example)
+	}
 	if c.Unit != "" && !c.UnitOptional {
 		lines = append(lines, "In "+c.Unit+"; any other unit of its kind is read where the header says so.")
 	}
