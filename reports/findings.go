@@ -135,11 +135,14 @@ func unconfirmed(a *exposure.Assessment) []string {
 	return out
 }
 
+// everything is what a distance of all sources at once belongs to.
+const everything = "everything together"
+
 // subject names what a distance belongs to.
 func subject(d exposure.Distance) string {
 	switch {
 	case d.All:
-		return "everything together"
+		return everything
 	case d.Housing != "":
 		return "housing " + d.Housing
 	}

@@ -153,7 +153,7 @@ func distanceLine(a *exposure.Assessment) string {
 		var far reach
 		var most float64
 		for _, r := range reaches(a) {
-			if m, _ := r.horizontal(); r.class == class && r.antenna == "" && r.subject != "everything together" && m > most {
+			if m, _ := r.horizontal(); r.class == class && r.antenna == "" && r.subject != everything && m > most {
 				far, most = r, m
 			}
 		}

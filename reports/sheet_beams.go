@@ -138,7 +138,7 @@ func ratioChart(class string, series []excelize.ChartSeries, a *exposure.Assessm
 		Title:     excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: "Exposure ratio along the main beam, class " + oneLine(class), Font: &excelize.Font{Family: fontName, Size: 11, Bold: true, Color: ink}}}},
 		Legend:    excelize.ChartLegend{Position: "right", Font: &excelize.Font{Family: fontName, Size: 9, Color: ink}},
 		Dimension: excelize.ChartDimension{Width: 760, Height: 515},
-		Format:    excelize.GraphicOptions{AltText: "Exposure ratio against distance, class " + oneLine(class), Positioning: "oneCell"},
+		Format:    excelize.GraphicOptions{AltText: "Exposure ratio against distance, class " + oneLine(class), Positioning: "oneCell", OffsetY: 6},
 	}
 }
 

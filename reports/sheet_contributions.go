@@ -132,6 +132,9 @@ func (r *report) contributionColumns() []column {
 func (r *report) contributions() {
 	columns := r.contributionColumns()
 	intro := "Each source's part at each place. Formulas are live where a line can be followed by hand; other methods give the number alone."
+	if r.a.Site != nil && !r.plainSums() {
+		intro += " A total marked \"not the plain sum\" is the engine's: there rows share a signal, and add in amplitude, or a body mean is compared."
+	}
 	if r.plan.share > 0 {
 		intro += fmt.Sprintf(" The list is long: sources below %s %% of a place's ratio for every class are joined into one line.", significant(r.plan.share*100, 2))
 	}
@@ -229,6 +232,24 @@ func (r *report) placeContributions(s *sheet, at int) {
 		}
 	}
 	s.strong(values...)
+}
+
+// plainSums reports whether no row shares a signal and no level is compared as
+// a body mean, so that every total is the sum of its lines.
+func (r *report) plainSums() bool {
+	signals := map[string]bool{}
+	for _, x := range r.a.Site.Sources {
+		if x.Signal != "" && signals[x.Signal] {
+			return false
+		}
+		signals[x.Signal] = true
+	}
+	for _, l := range r.levels {
+		if l.at.OverBody == limits.BodyMean {
+			return false
+		}
+	}
+	return true
 }
 
 func sq(n exposure.Number) float64 { return float64(n) * float64(n) }

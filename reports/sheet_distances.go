@@ -17,6 +17,7 @@ func (r *report) distances() {
 			kept = append(kept, x)
 		}
 	}
+	slices.SortStableFunc(kept, func(a, b reach) int { return order(a) - order(b) })
 	r.write(page{
 		name: sheetDistances, title: "Keep-out distances", landscape: true,
 		intro: "How far the boundary reaches from the mean of the centres of radiation: the extents of the smallest box that holds it. " +

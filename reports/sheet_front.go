@@ -2,6 +2,7 @@ package reports
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"example.org/standclear/exposure"
@@ -85,7 +86,7 @@ func (r *report) result() {
 	a, f := r.a, r.found
 	r.write(page{
 		name: sheetResult, title: "Result: " + oneLine(a.SiteName), intro: r.resultIntro(),
-		widths: []float64{21, 15, 10, 9, 9, 10, 10, 24}, onePage: true,
+		widths: []float64{20, 14, 10, 9, 9, 9, 13, 23}, onePage: true,
 	}, func(s *sheet) {
 		s.section(fmt.Sprintf("What is above: %d of %s above the limits supplied, for the class that may be there", len(f.above), count(f.places, "place")))
 		if len(f.above) > 0 {
@@ -193,6 +194,7 @@ func (r *report) resultReaches(s *sheet) {
 	if len(kept) == 0 {
 		kept = all
 	}
+	slices.SortStableFunc(kept, func(a, b reach) int { return order(a) - order(b) })
 	if len(kept) == 0 {
 		return
 	}
@@ -220,6 +222,14 @@ func (r *report) resultReaches(s *sheet) {
 		}
 		s.line(x.subject, x.class, m, direction, up, down, x.bracket, reachWords(x))
 	}
+}
+
+// order puts everything together before the parts.
+func order(x reach) int {
+	if x.subject == everything {
+		return 0
+	}
+	return 1
 }
 
 // reachWords says what an extent's verdict means: "above" is true nearby, of
