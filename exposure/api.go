@@ -17,6 +17,9 @@ type DistanceQuery struct {
 	// six extents.
 	Direction           *RayDirection
 	Rows, Housings, All bool // which; all false = all true
+	// Coverage, when not nil, adds to each distance the one that covers a share
+	// of what the data's standard uncertainties make possible.
+	Coverage *Coverage
 }
 
 // RayDirection is a direction in space: azimuth clockwise from the site's y

@@ -72,7 +72,7 @@ func (m *Model) Distances(ctx context.Context, q DistanceQuery) ([]Distance, err
 				if i >= len(jobs) || ctx.Err() != nil {
 					return
 				}
-				results[i], errs[i] = m.distances(ctx, jobs[i].t, jobs[i].r, q.Direction)
+				results[i], errs[i] = m.distances(ctx, jobs[i].t, jobs[i].r, q.Direction, q.Coverage)
 				if n := done.Add(1); m.options.Progress != nil {
 					m.options.Progress(float64(n) / float64(len(jobs)))
 				}
@@ -173,7 +173,7 @@ func (m *Model) compass() [6]axis {
 }
 
 // distances answers one target and class.
-func (m *Model) distances(ctx context.Context, t *target, r *rule, ray *RayDirection) ([]Distance, error) {
+func (m *Model) distances(ctx context.Context, t *target, r *rule, ray *RayDirection, coverage *Coverage) ([]Distance, error) {
 	member := map[int]bool{}
 	for _, i := range t.members {
 		member[i] = true
@@ -223,6 +223,11 @@ func (m *Model) distances(ctx context.Context, t *target, r *rule, ray *RayDirec
 			d.Verdict = NotAssessed
 		}
 		d.GovernedBy = e.governs(Point{X: math.Max(b.outer, 1e-3)})
+		if coverage != nil && !b.none {
+			if err := m.cover(ctx, &d, e, f, b, coverage); err != nil {
+				return nil, err
+			}
+		}
 		out = append(out, d)
 	}
 	return out, ctx.Err()
@@ -314,7 +319,8 @@ func (e *evaluator) radius(f frame, m *Model, members []int) float64 {
 // bracket encloses the coordinate of the outermost point of the boundary.
 type bracket struct {
 	inner, outer float64
-	none         bool // the ratio is at or below the share everywhere looked at
+	none         bool  // the ratio is at or below the share everywhere looked at
+	at           Point // the point found above the share that reaches farthest, in the frame
 }
 
 // decide says what is known of a box: +1 all of it above the share, -1 none of
@@ -390,21 +396,21 @@ func (h *farHeap) Pop() any {
 // reachAlong finds the largest x coordinate of the boundary volume, farthest
 // box first: a box whose ratio is below the share is dropped; one above it, or a
 // point above it, raises the inner end. The outer end is the far side of the
-// farthest box that could not be dropped.
+// farthest box that could not be dropped. A boundary that lies behind the centre
+// as a whole has both ends at zero.
 func (e *evaluator) reachAlong(ctx context.Context, radius float64) bracket {
 	inner, outer, found := 0.0, 0.0, false
+	some := false // a boundary exists, ahead of the centre or behind it
+	var tip Point
 	h := farHeap{{box{h: Point{X: radius, Y: radius, Z: radius}}, radius}}
 	for boxes := 0; len(h) > 0 && ctx.Err() == nil; boxes++ {
 		top := heap.Pop(&h).(farBox)
-		if top.far <= 0 {
-			break // the rest of the boundary, if any, lies behind the centre
-		}
 		gap := math.Max(extentFine*top.far, extentFineM)
 		if boxes > extentCheap {
 			gap = math.Max(extentCoarse*top.far, extentCoarseM)
 		}
-		if found && top.far <= inner+gap || boxes > extentMost {
-			outer = math.Max(outer, top.far)
+		if found && top.far <= inner+gap || boxes > extentMost || some && top.far <= 0 {
+			outer, some = math.Max(outer, top.far), true
 			break
 		}
 		v, reactive := e.decide(top.b)
@@ -413,26 +419,29 @@ func (e *evaluator) reachAlong(ctx context.Context, radius float64) bracket {
 		}
 		if v > 0 || reactive {
 			inner, outer = math.Max(inner, top.far), math.Max(outer, top.far)
-			found = true
+			found, some, tip = true, true, top.b.c
 			break
 		}
 		if math.Max(top.b.h.X, math.Max(top.b.h.Y, top.b.h.Z)) <= extentFineM/2 {
 			// It stays open, so it counts; go on to find out how near a point
 			// above the share lies.
-			outer = math.Max(outer, top.far)
+			outer, some = math.Max(outer, top.far), true
 			continue
 		}
-		if _, at := e.at(top.b.c); at > e.share && top.b.c.X > inner {
-			inner, found = top.b.c.X, true
+		if _, at := e.at(top.b.c); at > e.share {
+			some = true
+			if top.b.c.X > inner {
+				inner, found, tip = top.b.c.X, true, top.b.c
+			}
 		}
 		for _, b := range halves(top.b) {
 			heap.Push(&h, farBox{b, b.c.X + b.h.X})
 		}
 	}
-	if outer == 0 && !found {
+	if !some {
 		return bracket{none: true}
 	}
-	return bracket{inner: inner, outer: math.Max(outer, inner) + boxSlack}
+	return bracket{inner: inner, outer: math.Max(outer, inner) + boxSlack, at: tip}
 }
 
 // halves splits a box across its longest side.

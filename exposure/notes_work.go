@@ -24,4 +24,11 @@ var workNotes = []antenna.MethodNote{
 		Source: "this project",
 		Check:  "TestPlansHoldForSharedSignalsAndStimulation",
 	},
+	{
+		ID: "COVERAGE", Name: "distance with coverage", Formula: "one-sided quantile of the boundary's crossing over random inputs",
+		Range:  "power and gain normal in dB; tilt, azimuth and position normal; rows of one housing share the last three; small turns and shifts (second order)",
+		Errs:   "follows the line through the farthest point: exact to first order in the inputs; never nearer than the distance itself",
+		Source: "JCGM 101:2008, propagation of distributions, clauses 6.4.7 and 7.9; the line is this project's choice",
+		Check:  "TestCoverageOfOneSourceIsLognormal", Ours: true,
+	},
 }

@@ -126,6 +126,26 @@ type Distance struct {
 	Alone        bool    `json:"alone"`   // the row or housing is taken alone
 	Verdict      Verdict `json:"verdict"` // "above": a boundary exists; "within": nowhere; "not assessed"
 	Reason       string  `json:"reason,omitempty"`
+	// Covered is the distance with the coverage asked; nil where none was.
+	Covered *CoveredDistance `json:"coverage,omitempty"`
+}
+
+// CoveredDistance is a one-sided quantile of a distance over the standard
+// uncertainties of the antenna table.
+type CoveredDistance struct {
+	Probability float64     `json:"probability"`
+	DistanceM   float64     `json:"distance_m"`
+	LowM        float64     `json:"interval_low_m"` // 95 % confidence interval of the quantile
+	HighM       float64     `json:"interval_high_m"`
+	Trials      int         `json:"trials"`
+	Seed        uint64      `json:"seed"`
+	Inputs      []InputPart `json:"inputs"` // what each input alone contributes, largest first
+}
+
+// InputPart is the standard deviation of a distance when one input alone varies.
+type InputPart struct {
+	Input      string  `json:"input"` // power and gain, tilt, azimuth or position
+	DeviationM float64 `json:"deviation_m"`
 }
 
 // Zone is the boundary of one class on one surface or section. Polygons are in
