@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strconv"
 
 	"example.org/standclear/exposure"
 )
@@ -164,7 +165,7 @@ func (p *page) regions(a axes, s *exposure.SourceInfo) []tag {
 		}
 		x := a.at(pt{r.at, a.Y0})[0]
 		p.line([]pt{{x, a.Box.Y0}, {x, a.Box.Y1}}, stroke{width: 0.6, grey: 90, dash: []float64{2, 2}})
-		text := r.text + ", " + digits(r.at, 3) + " m from the body"
+		text := r.text + ", " + strconv.FormatFloat(roundTo(r.at, 3), 'f', -1, 64) + " m from the body"
 		w := contourFace.width(text)/2 + 4
 		var seats []pt
 		for k := 0; k < 12; k++ {
