@@ -68,8 +68,9 @@ func runDistance(ctx context.Context, std streams, o distanceOptions, path strin
 	if err != nil {
 		return err
 	}
+	o.notice(std, model.Notices())
 	if o.json {
-		return printJSON(std, map[string]any{"distances": distances, "warnings": orEmpty(site.Inputs.Warnings)})
+		return printJSON(std, answer("distances", distances, site, model))
 	}
 	return printDistances(std, distances, q.Direction != nil)
 }

@@ -83,9 +83,10 @@ func runField(ctx context.Context, std streams, o fieldOptions, path string) err
 	if err != nil {
 		return err
 	}
+	o.notice(std, model.Notices())
 	points = onlyClasses(points, o.classes)
 	if o.json {
-		err = printJSON(std, map[string]any{"points": points, "warnings": orEmpty(site.Inputs.Warnings)})
+		err = printJSON(std, answer("points", points, site, model))
 	} else {
 		err = printField(std, points)
 	}

@@ -9,6 +9,7 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+	"time"
 
 	"github.com/rogpeppe/go-internal/testscript"
 	"github.com/spf13/cobra"
@@ -115,6 +116,28 @@ func TestHelpExamplesRun(t *testing.T) {
 			assert.NoError(t, err, "%s: %s", line, text)
 		}
 	})
+}
+
+// TestInterruptLeavesNothing interrupts the main job while it computes: exit
+// status 1, one line, and no folder or file that was not there before.
+func TestInterruptLeavesNothing(t *testing.T) {
+	dir := t.TempDir()
+	// A line every centimetre takes far longer than the wait before the signal.
+	cmd := exec.Command("standclear", "assess", "--demo", "-o", "out", "--resolution", "0.01", "--quiet")
+	cmd.Dir = dir
+	var out, errOut bytes.Buffer
+	cmd.Stdout, cmd.Stderr = &out, &errOut
+	require.NoError(t, cmd.Start())
+	time.Sleep(500 * time.Millisecond)
+	require.NoError(t, cmd.Process.Signal(os.Interrupt))
+	var exit *exec.ExitError
+	require.ErrorAs(t, cmd.Wait(), &exit)
+	assert.Equal(t, exitFailed, exit.ExitCode())
+	assert.Empty(t, out.String())
+	assert.Equal(t, "standclear: interrupted; nothing was written, run it again when ready\n", errOut.String())
+	left, err := os.ReadDir(dir)
+	require.NoError(t, err)
+	assert.Empty(t, left)
 }
 
 // TestWordsOfHelp: no help promises what the program cannot know.

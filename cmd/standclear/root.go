@@ -104,8 +104,8 @@ func unknownCommand(cmd *cobra.Command, word string) error {
 	return usageError{cmd.CommandPath(), word, "is not a command; " + hint}
 }
 
-// negativeValues lets the values of convert start with a minus sign: what
-// follows is taken as values once a number is seen, so flags come before.
+// negativeValues lets the values of convert start with a minus sign: it moves
+// them behind the flags and a "--".
 func negativeValues(args []string) []string {
 	if len(args) == 0 || args[0] != "convert" {
 		return args
@@ -118,6 +118,8 @@ func negativeValues(args []string) []string {
 			i = len(args)
 		case startsNumber(a) && !takesValue(flags[len(flags)-1]):
 			values = append(values, a)
+		case len(values) > 0 && !strings.HasPrefix(a, "-") && !takesValue(flags[len(flags)-1]):
+			values = append(values, a) // a unit that stands apart from its number
 		default:
 			flags = append(flags, a)
 		}

@@ -86,6 +86,21 @@ func (f *siteFlags) warn(std streams, warnings []exposure.Warning) {
 	}
 }
 
+// notice tells what an assessor must know that belongs to no cell.
+func (f *siteFlags) notice(std streams, notices []string) {
+	if f.quiet || f.json {
+		return
+	}
+	for _, n := range notices {
+		fmt.Fprintln(std.err, "note: "+n)
+	}
+}
+
+// answer is a JSON answer with the warnings and notices that go with it.
+func answer(key string, value any, site *exposure.Site, model *exposure.Model) map[string]any {
+	return map[string]any{key: value, "warnings": orEmpty(site.Inputs.Warnings), "notices": append([]string{}, model.Notices()...)}
+}
+
 func warningLine(w exposure.Warning) string {
 	var at []string
 	for _, s := range []string{w.Place, w.Column} {

@@ -127,8 +127,9 @@ func runZone(ctx context.Context, std streams, o zoneOptions, path string) error
 	if err != nil {
 		return err
 	}
+	o.notice(std, model.Notices())
 	if o.json {
-		err = printJSON(std, map[string]any{"zones": zones, "warnings": orEmpty(site.Inputs.Warnings)})
+		err = printJSON(std, answer("zones", zones, site, model))
 	} else {
 		err = printZones(std, zones)
 	}
