@@ -2,6 +2,7 @@ package exposure
 
 import (
 	"fmt"
+	"math"
 
 	"example.org/standclear/antenna"
 )
@@ -19,6 +20,10 @@ func (c *compiled) choose(s *Source, ground Ground) error {
 		return b.thinWire()
 	case MethodAperture:
 		return b.dish()
+	case MethodCylindrical:
+		return b.cylinder()
+	case MethodArray:
+		return b.elements()
 	}
 	return fmt.Errorf("method %q is not one of auto, far field, cylindrical, array, aperture, wire", s.Method)
 }
@@ -55,6 +60,10 @@ func (b *builder) auto() error {
 	case PatternDish:
 		b.why = "a dish has an aperture"
 		return b.dish()
+	case PatternSector, PatternOmni, PatternBeamwidth, PatternFile:
+		if b.s.LengthM > 0 {
+			return b.panel()
+		}
 	}
 	b.why = "no length or dish is stated that a near-field method could use"
 	return b.far()
@@ -167,4 +176,83 @@ func (b *builder) dish() error {
 // warn adds to what the source's figures do not cover.
 func (b *builder) warn(format string, args ...any) {
 	b.caveats = append(b.caveats, fmt.Sprintf(format, args...))
+}
+
+// cylinder is method cylindrical.
+func (b *builder) cylinder() error {
+	if err := b.noEnvelope(); err != nil {
+		return err
+	}
+	if b.s.LengthM <= 0 {
+		return fmt.Errorf("method cylindrical needs the length of the array")
+	}
+	b.short(b.s.LengthM)
+	b.set(newCylindrical(b.p, b.s.Pattern, b.s.Gain, b.s.LengthM, b.s.ElectricalTiltRad), string(MethodCylindrical), true)
+	return nil
+}
+
+// noEnvelope refuses the envelope of many beams where one beam is computed.
+func (b *builder) noEnvelope() error {
+	if b.s.PatternKind == PatternActive {
+		return fmt.Errorf("method %s is for one beam, and the pattern %q is the envelope of many; choose far field or auto", b.s.Method, PatternActive)
+	}
+	return nil
+}
+
+// column is the row's column of elements; what is odd about it is said.
+func (b *builder) column() column {
+	c := column{
+		length: b.s.LengthM, spacing: b.s.SpacingM, elements: b.s.Elements, tilt: b.s.ElectricalTiltRad,
+		frontToBackDB: b.s.FrontToBackDB, polarization: b.s.Polarization,
+	}
+	if c.complete(b.lambda) == nil {
+		b.short(c.length)
+		if err := antenna.CheckPanel(math.Max(c.length, b.lambda), b.lambda, c.elements, c.spacing); err != nil {
+			b.warn("%s", err)
+		}
+	}
+	return c
+}
+
+// short says that a panel is shorter than half a wavelength.
+func (b *builder) short(length float64) {
+	if length < b.lambda/2 {
+		b.warn("a panel of %.4g m is shorter than half a wavelength (%.4g m); check length and frequency", length, b.lambda/2)
+	}
+}
+
+// elements is method array.
+func (b *builder) elements() error {
+	if err := b.noEnvelope(); err != nil {
+		return err
+	}
+	a, err := newArray(b.p, b.s.Pattern, float64(b.s.Gain), b.lambda, b.column())
+	if err != nil {
+		return err
+	}
+	b.warn("the array's waves carry %.3g of its power, by integration over the sphere; method array is not scaled up", a.integral)
+	b.set(a, string(MethodArray), true)
+	return nil
+}
+
+// panel is what auto takes for a panel.
+func (b *builder) panel() error {
+	c := b.column()
+	a, err := newArray(b.p, b.s.Pattern, float64(b.s.Gain), b.lambda, c)
+	if err != nil {
+		return err
+	}
+	scaled := "its waves carry all of its power"
+	if f := 1 / a.integral; f > 1 {
+		a.boost(f)
+		scaled = fmt.Sprintf("scaled up %.3g times in power, since its waves would carry %.3g of it", f, a.integral)
+	}
+	length := b.s.LengthM
+	b.why = fmt.Sprintf("a panel with a length: %d elements %.4g m apart, %s; with the cylindrical model and the pattern to %.4g m", len(a.z), a.spacing, scaled, FarFieldDistance(length, b.lambda))
+	b.set(&panel{
+		farField: *newFarField(b.p, b.s.Pattern, float64(b.s.Gain)), array: a,
+		cylinder: newCylinder(b.s.Pattern, b.s.Gain, length, b.s.ElectricalTiltRad),
+		edge:     FarFieldDistance(length, b.lambda), half: length / 2, builtIn: b.s.PatternKind != PatternFile,
+	}, "panel", true)
+	return nil
 }
