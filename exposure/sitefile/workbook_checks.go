@@ -28,8 +28,11 @@ func (b *workbookBuilder) check(sheet string, c columnPlan, from, to string) {
 		dv.Formula1 = b.list(c.choices)
 		message = "Choose one of: " + strings.Join(c.choices, ", ")
 	case c.listFrom != "":
+		if b.listed[c.listFrom] == "" {
+			return // a list must not point to a sheet that is not there
+		}
 		dv.Type = "list"
-		dv.Formula1 = c.listFrom
+		dv.Formula1 = b.listed[c.listFrom]
 	case c.kind == numberCell:
 		dv.Type, dv.Operator, dv.Formula1, dv.Formula2 = numberCheck(c, from)
 		message = "Type a number"

@@ -222,11 +222,7 @@ func planColumn(c ColumnSchema) columnPlan {
 }
 
 // suggestions are columns that name a row of another table.
-var suggestions = map[string]string{
-	"on":         "surfaces!$A$4:$A$503",
-	"place":      "places!$A$4:$A$2003",
-	"instrument": "instruments!$A$4:$A$503",
-}
+var suggestions = map[string]string{"on": "surfaces", "place": "places", "instrument": "instruments"}
 
 // unitsOf lists common units that a unit cell may hold.
 func unitsOf(c ColumnSchema) []string {

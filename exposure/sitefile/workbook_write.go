@@ -35,7 +35,7 @@ type columnPlan struct {
 	note     string // shown at the header
 	kind     cellKind
 	choices  []string
-	listFrom string   // a range of another sheet that is suggested
+	listFrom string   // a table whose first column is suggested
 	open     bool     // choices are suggestions
 	words    []string // allowed beside a number
 	limits   *Range   // of the number, in the unit of the header
@@ -63,8 +63,18 @@ const (
 func writeWorkbook(w io.Writer, plans []sheetPlan) error {
 	f := excelize.NewFile()
 	defer f.Close()
-	b := &workbookBuilder{book: f, style: map[string]int{}, looks: map[role]int{}}
+	b := &workbookBuilder{book: f, style: map[string]int{}, looks: map[role]int{}, listed: map[string]string{}}
 	b.styles()
+	for _, p := range plans {
+		first := 3 // below the line of advice and the header
+		for _, r := range p.rows {
+			if !r.grey {
+				break
+			}
+			first++
+		}
+		b.listed[p.name] = fmt.Sprintf("%s!$A$%d:$A$%d", p.name, first, first+max(len(p.rows), p.room))
+	}
 	b.guide(plans)
 	for _, p := range plans {
 		b.sheet(p)
@@ -85,6 +95,7 @@ type workbookBuilder struct {
 	err     error
 	style   map[string]int
 	looks   map[role]int
+	listed  map[string]string // by sheet: the range of its first column
 	choices []choiceList
 }
 

@@ -472,3 +472,29 @@ func TestFaultNamesTheCell(t *testing.T) {
 	require.Len(t, faults, 1)
 	assert.Equal(t, "site.xlsx antennas!"+cell+`: power [W]: "20O" is not a number; write digits only, such as 200`, faults[0].Error())
 }
+
+// TestListsPointToSheetsThatAreThere: a drop-down of a sheet that a site does not
+// have would make a spreadsheet program repair the file.
+func TestListsPointToSheetsThatAreThere(t *testing.T) {
+	places := slices.DeleteFunc(demoGrids(t), func(g *grid) bool { return g.table == "surfaces" })
+	var b bytes.Buffer
+	require.NoError(t, writeGrids(&b, places))
+	for _, data := range [][]byte{fillInBytes(t), demoWorkbook(t), b.Bytes()} {
+		f, err := excelize.OpenReader(bytes.NewReader(data))
+		require.NoError(t, err)
+		lists := 0
+		for _, sheet := range f.GetSheetList() {
+			checks, err := f.GetDataValidations(sheet)
+			require.NoError(t, err)
+			for _, dv := range checks {
+				if dv.Type == "list" {
+					lists++
+					from, _, _ := strings.Cut(dv.Formula1, "!")
+					assert.Contains(t, f.GetSheetList(), from)
+				}
+			}
+		}
+		assert.Greater(t, lists, 5)
+		require.NoError(t, f.Close())
+	}
+}
