@@ -327,9 +327,18 @@ func (s *sheet) table(columns []column) {
 			s.b.explained = append(s.b.explained, explained{s.page.name, c})
 		}
 		cells[i] = excelize.Cell{StyleID: s.b.style(l), Value: cellText(c.header())}
-		height = math.Max(height, wrapped(c.header(), s.width(i)*0.92)*bodyLine+4)
+		height = math.Max(height, wrapped(c.header(), s.room(i)*0.92)*bodyLine+4)
 	}
 	s.put(cells, height)
+}
+
+// room is the width that a column has for text.
+func (s *sheet) room(i int) float64 {
+	const indent = 1.4
+	if s.indented(i) {
+		return s.width(i) - indent
+	}
+	return s.width(i)
 }
 
 func (s *sheet) width(i int) float64 {
@@ -354,7 +363,7 @@ func (s *sheet) cells(strong bool, values []any) {
 		}
 		c := s.b.cell(v, d, strong, s.indented(i))
 		if text, ok := c.Value.(string); ok {
-			lines = math.Max(lines, wrapped(text, s.width(i)))
+			lines = math.Max(lines, wrapped(text, s.room(i)))
 		}
 		cells[i] = c
 	}
@@ -365,10 +374,10 @@ func (s *sheet) cells(strong bool, values []any) {
 	s.put(cells, height)
 }
 
-// indented reports whether a column of text follows a column of numbers: the
-// two would touch, one being right-aligned and the other left-aligned.
+// indented reports whether a column of text is set off from the column to its
+// left, which it would touch.
 func (s *sheet) indented(i int) bool {
-	return i > 0 && i < len(s.columns) && s.columns[i].digits == asText && s.columns[i-1].digits != asText
+	return i > 0 && i < len(s.columns) && s.columns[i].digits == asText
 }
 
 // cell turns a value into a styled cell. Infinite numbers become words, since a

@@ -108,7 +108,7 @@ const (
 
 func (r *report) contributionColumns() []column {
 	columns := []column{
-		{head: "place", width: 15}, {head: "antenna", width: 14},
+		{head: "place", width: 15}, {head: "antenna", width: 16},
 		{head: "frequency", unit: "MHz", width: 10, digits: shortest, what: "carrier frequency of the source"},
 		{head: "method", width: 11},
 		{head: "distance", unit: "m", width: 8, digits: cents, what: "distance from the source's centre of radiation"},

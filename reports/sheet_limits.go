@@ -2,6 +2,7 @@ package reports
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"example.org/standclear/exposure"
@@ -115,18 +116,16 @@ func levelRows(a *exposure.Assessment) ([]levelRow, map[levelKey]int) {
 	if a.Site == nil || a.Site.Limits == nil {
 		return nil, at
 	}
+	var frequencies []float64
+	for _, s := range a.Sources {
+		frequencies = append(frequencies, s.FrequencyHz)
+	}
+	slices.Sort(frequencies)
+	frequencies = slices.Compact(frequencies)
 	for _, class := range a.Classes {
-		seen := map[float64]bool{}
-		for _, s := range a.Sources {
-			if seen[s.FrequencyHz] {
-				continue
-			}
-			seen[s.FrequencyHz] = true
-			for _, x := range a.Site.Limits.At(class, s.FrequencyHz) {
-				k := levelKey{class, x.Group.String(), s.FrequencyHz}
-				if _, ok := at[k]; ok {
-					continue
-				}
+		for _, f := range frequencies {
+			for _, x := range a.Site.Limits.At(class, f) {
+				k := levelKey{class, x.Group.String(), f}
 				at[k] = levelsFirst + len(rows)
 				rows = append(rows, levelRow{k, x})
 			}
@@ -151,8 +150,8 @@ var levelColumns = []column{
 	{head: "B level", unit: "uT", width: 9, digits: figures, what: "magnetic flux density level that holds there"},
 	{head: "S level", unit: "W/m2", width: 9, digits: figures, what: "power density level that holds there"},
 	{head: "averaging", unit: "min", width: 9, digits: figures, what: "the shortest averaging time of the rows that hold"},
-	{head: "over body", width: 9},
-	{head: "how E, H and S join", width: 11},
+	{head: "over body", width: 11},
+	{head: "how E, H and S join", width: 13},
 	{head: "covered", width: 12},
 }
 

@@ -23,7 +23,7 @@ func (r *report) site() {
 	a := r.a
 	r.write(page{
 		name: sheetSite, title: "Site", intro: "As stated in the tables site, surfaces and operators.",
-		widths: []float64{26, 14, 9, 9, 9, 9, 11, 25}, landscape: true,
+		widths: []float64{27, 16, 9, 9, 9, 9, 16, 38}, landscape: true,
 	}, func(s *sheet) {
 		if a.Site == nil {
 			return
@@ -33,7 +33,7 @@ func (r *report) site() {
 			if value == "" {
 				value = "not stated"
 			}
-			s.put([]any{r.plain(name, true), r.plain(value, false)}, textHeight(value, 84, bodyLine))
+			s.put([]any{r.plain(name, true), r.plain(value, false)}, textHeight(value, 106, bodyLine))
 			s.keepMerged(2, len(s.page.widths))
 		}
 		item("name", about.Name)
