@@ -41,7 +41,7 @@ func TestPanelIsTheLargerOfItsParts(t *testing.T) {
 	rapid.Check(t, func(t *rapid.T) {
 		r := math.Pow(10, rapid.Float64Range(-0.3, 2).Draw(t, "log r"))
 		q := e.pos.Add(Point{X: r * u.Draw(t, "x"), Y: r * u.Draw(t, "y"), Z: r * u.Draw(t, "z") / 3})
-		if q == e.pos {
+		if q.Sub(e.pos).Norm() < 0.02 {
 			return
 		}
 		d, far, arr := e.at(q), e.farField.at(q).E, e.array.at(q)

@@ -25,6 +25,7 @@ type ring struct {
 	rlo, rhi float64
 	zlo, zhi float64
 	radius   float64
+	dr, dz   float64 // its parts in distance and height
 }
 
 // ring encloses a box. The distance changes by at most the extent a toward the
@@ -39,13 +40,13 @@ func (r *rod) ring(b box) ring {
 		// Too near the line for a direction of its own.
 		e := r.across()
 		out := math.Hypot(extent(e, b.h), extent(r.dir.Cross(e), b.h))
-		return ring{rho: rho, z: z, zlo: z - h, zhi: z + h, rlo: math.Max(0, rho-out), rhi: rho + out, radius: math.Hypot(out, h)}
+		return ring{rho: rho, z: z, zlo: z - h, zhi: z + h, rlo: math.Max(0, rho-out), rhi: rho + out, radius: math.Hypot(out+rho, h), dr: out + rho, dz: h}
 	}
 	radial := w.Scale(1 / rho)
 	a, l := extent(radial, b.h), extent(r.dir.Cross(radial), b.h)
 	g := ring{rho: rho, z: z, zlo: z - h, zhi: z + h, rlo: math.Max(0, rho-a), rhi: math.Sqrt((rho+a)*(rho+a) + l*l)}
-	dr := math.Max(g.rhi-rho, rho-g.rlo)
-	g.radius = math.Sqrt(dr*dr + h*h)
+	g.dr, g.dz = math.Max(g.rhi-rho, rho-g.rlo), h
+	g.radius = math.Sqrt(g.dr*g.dr + h*h)
 	return g
 }
 
