@@ -44,7 +44,7 @@ func draw(ctx context.Context, a *exposure.Assessment) ([]picture, error) {
 			jobs = append(jobs, job{name, func() (*figure.Figure, error) { return figure.Plan(data) }})
 			for k := range a.Grids {
 				g := &a.Grids[k]
-				if g.Section != nil || g.Surface != s.ID {
+				if g.Section != nil || g.Surface != s.ID || !reachesContour(a, g) {
 					continue
 				}
 				data := data
@@ -95,6 +95,18 @@ func draw(ctx context.Context, a *exposure.Assessment) ([]picture, error) {
 		})
 	}
 	return out, group.Wait()
+}
+
+// reachesContour reports whether the ratio on a surface reaches the lowest
+// contour line anywhere: below it a figure of contours is blank.
+func reachesContour(a *exposure.Assessment, g *exposure.RatioGrid) bool {
+	const lowest = 0.05
+	for _, z := range a.Zones {
+		if z.Surface == g.Surface && z.Class == g.Class && z.Section == nil {
+			return z.MaxRatioUpper >= lowest
+		}
+	}
+	return true
 }
 
 func render(name string, f *figure.Figure) (picture, error) {

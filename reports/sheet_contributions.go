@@ -110,7 +110,7 @@ func (r *report) contributionColumns() []column {
 	columns := []column{
 		{head: "place", width: 15}, {head: "antenna", width: 16},
 		{head: "frequency", unit: "MHz", width: 10, digits: shortest, what: "carrier frequency of the source"},
-		{head: "method", width: 11},
+		{head: "method", width: 17},
 		{head: "distance", unit: "m", width: 8, digits: cents, what: "distance from the source's centre of radiation"},
 		{head: "azimuth off boresight", unit: "deg", width: 9, digits: tenths, what: "azimuth of the place in the antenna's frame"},
 		{head: "elevation", unit: "deg", width: 8, digits: tenths, what: "elevation of the place in the antenna's frame"},

@@ -182,7 +182,7 @@ var powerColumns = []column{
 	{head: "mean EIRP", unit: "W", width: 10, digits: figures, what: "mean power times gain", method: "EIRP-1"},
 	{head: "reactive region", unit: "m", width: 9, digits: millis, what: "extent of the reactive region, from the nearest point of the radiating body", method: "REGION-1"},
 	{head: "far field from", unit: "m", width: 9, digits: cents, what: "where the far field begins, from the nearest point of the radiating body", method: "REGION-2"},
-	{head: "method", width: 12}, {head: "why", width: 34},
+	{head: "method", width: 12}, {head: "why", width: 58},
 }
 
 // powers writes the chain from transmitter to EIRP with live formulas, the
