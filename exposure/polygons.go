@@ -9,7 +9,7 @@ import (
 // (outward for the outer polygon, inward for the inner one) and returns them in
 // metres with the area that straightening added or removed.
 func (p *plane) polygons(leaves []leaf, pick func(leaf) bool, tolerance float64, outward bool) (MultiPolygon, float64) {
-	rings := trace(leaves, p.outline, pick)
+	rings := trace(leaves, p.outline, p.grain, pick)
 	before := 0.0
 	for _, r := range rings {
 		before += latticeArea(r)

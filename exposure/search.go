@@ -38,6 +38,7 @@ type plane struct {
 	x0, y0   float64 // lower left corner, m
 	step     float64 // side of the finest cell, m
 	root     uint8   // the root square has 2^root finest cells a side
+	grain    grain   // to which corners that do not lie on the lattice are rounded
 	outline  []latticeEdge
 	from, to float64 // heights of the column, m
 	mean     bool    // some terms are compared by their mean over the column

@@ -36,17 +36,19 @@ func (h *peakHeap) Pop() any {
 }
 
 // The search for the largest ratio ends at this relative gap, or after this many
-// bounds of single terms with the gap it has.
+// bounds of single terms with the gap it has: fewer where the verdict does not
+// hang on it.
 const (
-	summitGap    = 2e-2
-	summitEffort = 400_000
+	summitGap     = 2e-2
+	summitEffort  = 400_000
+	summitDecided = 80_000
 )
 
 // largestOver finds the largest ratio over the body volume of a plane, best
 // bound first (branch and bound), to within summitGap or, at the
 // edge of a reactive region, to the finest cell. What lies inside a reactive
 // region that a method does not reach is not assessed and stays out of it.
-func (e *evaluator) largestOver(ctx context.Context, p *plane) summit {
+func (e *evaluator) largestOver(ctx context.Context, p *plane, most int) summit {
 	side := float64(int64(1)<<p.root) * p.step
 	first := box{c: Point{X: p.x0 + side/2, Y: p.y0 + side/2, Z: (p.from + p.to) / 2}, h: Point{X: side / 2, Y: side / 2, Z: (p.to - p.from) / 2}}
 	s := summit{}
@@ -102,7 +104,7 @@ func (e *evaluator) largestOver(ctx context.Context, p *plane) summit {
 		top := h[0]
 		s.upper = math.Max(top.upper, s.lower)
 		small := top.b.h.X <= p.step/2 && top.b.h.Z <= p.step/2
-		if top.upper <= s.lower*(1+summitGap) || small || effort > summitEffort {
+		if top.upper <= s.lower*(1+summitGap) || small || effort > most {
 			return s
 		}
 		heap.Pop(&h)
@@ -110,7 +112,9 @@ func (e *evaluator) largestOver(ctx context.Context, p *plane) summit {
 			consider(b, top.open)
 		}
 	}
-	s.upper = math.Max(s.upper, s.lower)
+	if len(h) == 0 {
+		s.upper = s.lower // every box that was left could not hold more
+	}
 	return s
 }
 
@@ -135,6 +139,7 @@ func grown(b box) box {
 // seed looks in front of each source, so that the search starts with a good
 // value to beat.
 func (e *evaluator) seed(p *plane, s *summit) {
+	best, at := 0.0, Point{}
 	for i := range e.terms {
 		for _, em := range e.terms[i].em {
 			w := em.(placed).where()
@@ -151,17 +156,20 @@ func (e *evaluator) seed(p *plane, s *summit) {
 				if e.reaches(line) != reached {
 					continue
 				}
-				_, v := e.at(c)
-				if p.mean {
-					by := e.bodyNear(c.X, c.Y, c.Z, p.from, p.to)
-					v, _ = by.largest(e.ng)
-				}
-				if v > s.lower {
-					s.lower, s.at = v, c
+				if _, v := e.at(c); v > best {
+					best, at = v, c
 				}
 			}
 		}
 	}
+	if best == 0 {
+		return
+	}
+	if p.mean {
+		by := e.bodyNear(at.X, at.Y, at.Z, p.from, p.to)
+		best, _ = by.largest(e.ng)
+	}
+	s.lower, s.at = best, at
 }
 
 // body encloses the class's ratio over a box of the body volume: of points, or

@@ -17,13 +17,25 @@ type edgeEvent struct {
 // latticePoint is a vertex in units of the finest cell.
 type latticePoint struct{ x, y float64 }
 
+// grain is a power of two: corners that do not lie on the lattice are rounded to
+// whole 1/grain of a finest cell, which is 2 to 4 nm. So corners that differ
+// still do when they are written to a nanometre, and slivers of less than that,
+// where the outline passes a corner of the lattice, close up.
+type grain float64
+
+func newGrain(step float64) grain {
+	return grain(math.Exp2(math.Floor(math.Log2(step / 2e-9))))
+}
+
+func (g grain) snap(x float64) float64 { return math.Round(x*float64(g)) / float64(g) }
+
 // directed is a boundary edge with the region on its left.
 type directed struct{ from, to latticePoint }
 
 // trace joins the leaves that pick chooses into simple closed rings in units of
 // the finest cell, region on the left. Work grows with the number of leaves,
 // not with the area.
-func trace(leaves []leaf, outline []latticeEdge, pick func(leaf) bool) [][]latticePoint {
+func trace(leaves []leaf, outline []latticeEdge, g grain, pick func(leaf) bool) [][]latticePoint {
 	var vertical, horizontal []edgeEvent
 	var edges []directed
 	side := func(a, b latticePoint) {
@@ -63,7 +75,7 @@ func trace(leaves []leaf, outline []latticeEdge, pick func(leaf) bool) [][]latti
 			continue
 		}
 		for _, r := range rings {
-			piece := clipRing(r, x, y, x+w, y+w)
+			piece := clipRing(r, g, x, y, x+w, y+w)
 			for i := range piece {
 				side(piece[i], piece[(i+1)%len(piece)])
 			}
@@ -230,7 +242,7 @@ func outlineRings(edges []latticeEdge) [][]latticePoint {
 // with a grid line is computed from the whole edge of the outline it lies on,
 // so that neighbouring cells find the same point; where the ring leaves and
 // comes back, the bridges along the rectangle's sides cancel in the trace.
-func clipRing(ring []latticePoint, lox, loy, hix, hiy float64) []latticePoint {
+func clipRing(ring []latticePoint, g grain, lox, loy, hix, hiy float64) []latticePoint {
 	type vertex struct {
 		latticePoint
 		edge int // the outline edge that runs from this vertex, -1 = a rectangle's side
@@ -243,9 +255,9 @@ func clipRing(ring []latticePoint, lox, loy, hix, hiy float64) []latticePoint {
 	cut := func(edge int, vertical bool, line float64) latticePoint {
 		a, b := ring[edge], ring[(edge+1)%n]
 		if vertical {
-			return latticePoint{line, a.y + (line-a.x)*((b.y-a.y)/(b.x-a.x))}
+			return latticePoint{line, g.snap(a.y + (line-a.x)*((b.y-a.y)/(b.x-a.x)))}
 		}
-		return latticePoint{a.x + (line-a.y)*((b.x-a.x)/(b.y-a.y)), line}
+		return latticePoint{g.snap(a.x + (line-a.y)*((b.x-a.x)/(b.y-a.y))), line}
 	}
 	half := func(inside func(p latticePoint) bool, vertical bool, line float64) {
 		var next []vertex

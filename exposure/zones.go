@@ -185,6 +185,25 @@ func (m *Model) sectionRegion(s Section) (region, error) {
 
 // zone answers one class on one region.
 func (m *Model) zone(ctx context.Context, g region, r *rule, q *ZoneQuery) (Zone, error) {
+	z, e, p, err := m.lines(ctx, g, r, q)
+	if err != nil {
+		return z, err
+	}
+	effort := summitEffort
+	if z.InnerAreaM2 > 0 {
+		effort = summitDecided
+	}
+	top := e.largestOver(ctx, p, effort)
+	z.MaxRatioLower, z.MaxRatioUpper = Number(top.lower), Number(top.upper)
+	at := g.frame.back(top.at)
+	z.MaxAt = [3]float64{at.X, at.Y, at.Z}
+	z.Covered = len(r.uncovered) == 0
+	z.Verdict, z.Reason = zoneVerdict(&z, r, top)
+	return z, ctx.Err()
+}
+
+// lines finds the outer and inner polygons, and returns what found them.
+func (m *Model) lines(ctx context.Context, g region, r *rule, q *ZoneQuery) (Zone, *evaluator, *plane, error) {
 	e := m.evaluator(r, nil, g.factor, g.frame, q.Share)
 	mean := r.anyMean && !g.peak && g.to > g.from
 	p := newPlane(g.rings, q.ResolutionM, g.from, g.to, mean)
@@ -211,19 +230,13 @@ func (m *Model) zone(ctx context.Context, g region, r *rule, q *ZoneQuery) (Zone
 	}
 	leaves, cells, err := e.run(ctx, p, m.options.Workers)
 	if err != nil {
-		return z, err
+		return z, nil, nil, err
 	}
 	z.Cells = cells
 	z.Outer, z.OuterAddedM2 = p.polygons(leaves, func(l leaf) bool { return true }, q.ResolutionM/4, true)
 	z.Inner, z.InnerRemovedM2 = p.polygons(leaves, func(l leaf) bool { return l.kind == innerToo }, q.ResolutionM/4, false)
 	z.OuterAreaM2, z.InnerAreaM2 = z.Outer.Area(), z.Inner.Area()
-	top := e.largestOver(ctx, p)
-	z.MaxRatioLower, z.MaxRatioUpper = Number(top.lower), Number(top.upper)
-	at := g.frame.back(top.at)
-	z.MaxAt = [3]float64{at.X, at.Y, at.Z}
-	z.Covered = len(r.uncovered) == 0
-	z.Verdict, z.Reason = zoneVerdict(&z, r, top)
-	return z, ctx.Err()
+	return z, e, p, ctx.Err()
 }
 
 // zoneVerdict compares the largest ratio with the share.
@@ -249,6 +262,7 @@ func newPlane(rings []Ring, resolution, from, to float64, mean bool) *plane {
 		p.x0, p.y0 = math.Min(p.x0, v[0]), math.Min(p.y0, v[1])
 		x1, y1 = math.Max(x1, v[0]), math.Max(y1, v[1])
 	}
+	p.grain = newGrain(p.step)
 	cells := math.Max(x1-p.x0, y1-p.y0) / p.step
 	for float64(int64(1)<<p.root) < cells {
 		p.root++
@@ -259,9 +273,14 @@ func newPlane(rings []Ring, resolution, from, to float64, mean bool) *plane {
 
 func (p *plane) setOutline(rings []Ring) {
 	p.outline = p.outline[:0]
+	at := func(v [2]float64) latticePoint {
+		return latticePoint{p.grain.snap((v[0] - p.x0) / p.step), p.grain.snap((v[1] - p.y0) / p.step)}
+	}
 	for _, r := range rings {
 		for i := 0; i+1 < len(r); i++ {
-			p.outline = append(p.outline, latticeEdge{(r[i][0] - p.x0) / p.step, (r[i][1] - p.y0) / p.step, (r[i+1][0] - p.x0) / p.step, (r[i+1][1] - p.y0) / p.step})
+			if a, b := at(r[i]), at(r[i+1]); a != b {
+				p.outline = append(p.outline, latticeEdge{a.x, a.y, b.x, b.y})
+			}
 		}
 	}
 }
@@ -274,6 +293,7 @@ func (p *plane) coarser(levels uint8) *plane {
 	}
 	k := float64(int(1) << levels)
 	c.step *= k
+	c.grain *= grain(k) // the same length in metres
 	c.root -= levels
 	c.outline = nil
 	for _, e := range p.outline {
