@@ -85,8 +85,36 @@ func (s swept) RelativeRange(phi, theta antenna.Interval) antenna.Interval {
 	// What every direction of the box sees is at least what its common part of
 	// the sweep brings: any one azimuth of that part is a lower bound.
 	if a, b := phi.Hi-s.half, phi.Lo+s.half; a <= b {
-		best := math.Remainder(math.Min(math.Max(0, a), b), 2*math.Pi)
-		lo = s.Pattern.RelativeRange(antenna.Interval{Lo: best, Hi: best}, theta).Lo
+		lo = s.brings(antenna.Interval{Lo: a, Hi: b}, theta, hi)
 	}
 	return antenna.Interval{Lo: math.Min(lo, hi), Hi: hi}
+}
+
+// brings is a lower bound of the largest value over the azimuths of common: that
+// of the azimuth nearest boresight, or, where that falls short of hi, of the best
+// azimuth met on the way down into the part with the highest upper bound.
+func (s swept) brings(common, theta antenna.Interval, hi float64) float64 {
+	value := func(phi float64) float64 {
+		phi = math.Remainder(phi, 2*math.Pi)
+		return s.Pattern.RelativeRange(antenna.Interval{Lo: phi, Hi: phi}, theta).Lo
+	}
+	best := value(math.Min(math.Max(0, common.Lo), common.Hi))
+	for depth := 0; depth < 16 && best < hi*(1-1e-6); depth++ {
+		const parts = 4
+		width := common.Width() / parts
+		top := antenna.Interval{}
+		highest := -1.0
+		for k := 0; k < parts; k++ {
+			part := antenna.Interval{Lo: common.Lo + width*float64(k), Hi: common.Lo + width*float64(k+1)}
+			turned := part
+			turned.Lo = math.Remainder(part.Lo, 2*math.Pi)
+			turned.Hi = turned.Lo + width
+			if h := s.Pattern.RelativeRange(turned, theta).Hi; h > highest {
+				top, highest = part, h
+			}
+		}
+		common = top
+		best = math.Max(best, value((top.Lo+top.Hi)/2))
+	}
+	return best
 }
