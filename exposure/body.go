@@ -7,20 +7,49 @@ import "math"
 // verdict allows for it.
 const bodyGap = 1e-4
 
-// body returns the class's ratios by group over the body above (x, y), and the
-// height at which the governing group is largest. useMean applies the body mean
-// where the limit rows ask for it.
-func (e *evaluator) body(x, y, from, to float64, useMean bool) (groupRatios, float64) {
+// body returns the class's ratios by group over the body above (x, y), each
+// group's at the height where it is largest, and that height for the group that
+// governs. useMean applies the body mean where the limit rows ask for it.
+func (e *evaluator) body(x, y, from, to float64, useMean bool) (by groupRatios, at float64) {
 	if to <= from {
-		by, _ := e.at(Point{X: x, Y: y, Z: from})
+		by, _ = e.at(Point{X: x, Y: y, Z: from})
 		return by, from
 	}
-	at := e.tallest(x, y, from, to, useMean)
-	by := e.bodyNear(x, y, at, from, to)
-	if !useMean {
-		by, _ = e.at(Point{X: x, Y: y, Z: at})
+	var means groupRatios
+	if useMean {
+		means = e.means(x, y, from, to)
+	}
+	skipMean := useMean && e.hasPeaks()
+	best := math.Inf(-1)
+	at = from
+	for g := 0; g < e.ng; g++ {
+		base := 0.0
+		if skipMean {
+			base = means[g]
+		}
+		z, v := e.tallest(g, base, x, y, from, to, skipMean)
+		if useMean && !skipMean {
+			v = means[g] // all that counts; z is where the field is largest all the same
+		}
+		by[g] = v
+		if v > best {
+			best, at = v, z
+		}
 	}
 	return by, at
+}
+
+// means returns, by group, the part of the ratio that is a mean over the body.
+func (e *evaluator) means(x, y, from, to float64) (by groupRatios) {
+	for i := range e.terms {
+		t := &e.terms[i]
+		for g := 0; g < e.ng; g++ {
+			if t.w[g].mean {
+				by[g] += t.meanOver(e.rule, g, x, y, from, to)
+			}
+		}
+	}
+	return by
 }
 
 // bodyNear returns the ratios at one height, with the mean over the body in
@@ -47,20 +76,14 @@ func (e *evaluator) termNear(t *evalTerm, x, y, at, from, to float64) groupRatio
 	return by
 }
 
-// tallest finds the height of the largest ratio over the body by branch and
-// bound, to within bodyGap. Where useMean is set and some terms are compared by
-// their mean, those do not vary with height and stay out of it; where all are,
-// it is the height of the largest ratio all the same.
-func (e *evaluator) tallest(x, y, from, to float64, useMean bool) float64 {
-	skipMean := useMean && e.hasPeaks()
-	value := func(z float64) float64 {
-		by := e.peaksAt(Point{X: x, Y: y, Z: z}, skipMean)
-		v, _ := by.largest(e.ng)
-		return v
-	}
-	bestAt, best := from, value(from)
+// tallest finds the height of a group's largest ratio over the body by branch
+// and bound, to within bodyGap, and that ratio. With skipMean, the terms that are
+// compared by their mean do not vary with height: base stands for them.
+func (e *evaluator) tallest(g int, base, x, y, from, to float64, skipMean bool) (at, best float64) {
+	value := func(z float64) float64 { return base + e.peaksAt(Point{X: x, Y: y, Z: z}, skipMean)[g] }
+	at, best = from, value(from)
 	if v := value(to); v > best {
-		bestAt, best = to, v
+		at, best = to, v
 	}
 	type part struct{ lo, hi float64 }
 	work := []part{{from, to}}
@@ -69,14 +92,15 @@ func (e *evaluator) tallest(x, y, from, to float64, useMean bool) float64 {
 		work = work[:len(work)-1]
 		mid := (p.lo + p.hi) / 2
 		if v := value(mid); v > best {
-			bestAt, best = mid, v
+			at, best = mid, v
 		}
-		if e.peaksOver(box{c: Point{X: x, Y: y}}.heights(p.lo, p.hi), skipMean) <= best*(1+bodyGap) || p.hi-p.lo < 1e-4 {
+		most := base + e.peaksOver(box{c: Point{X: x, Y: y}}.heights(p.lo, p.hi), skipMean)[g]
+		if most <= best*(1+bodyGap) || p.hi-p.lo < 1e-4 {
 			continue
 		}
 		work = append(work, part{p.lo, mid}, part{mid, p.hi})
 	}
-	return bestAt
+	return at, best
 }
 
 // hasPeaks reports whether any term is compared by its largest value.
@@ -107,8 +131,8 @@ func (e *evaluator) peaksAt(p Point, skipMean bool) groupRatios {
 	return by
 }
 
-// peaksOver bounds the largest group of peaksAt over b from above.
-func (e *evaluator) peaksOver(b box, skipMean bool) float64 {
+// peaksOver bounds peaksAt over b from above, by group.
+func (e *evaluator) peaksOver(b box, skipMean bool) groupRatios {
 	var sum, l, h groupRatios
 	for i := range e.terms {
 		t := &e.terms[i]
@@ -119,8 +143,10 @@ func (e *evaluator) peaksOver(b box, skipMean bool) float64 {
 			}
 		}
 	}
-	hi, _ := sum.largest(e.ng)
-	return hi * (1 + sumSlack)
+	for g := range sum {
+		sum[g] *= 1 + sumSlack
+	}
+	return sum
 }
 
 // meanOver is the mean of a term's ratio over the body: Gauss-Legendre with

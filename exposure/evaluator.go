@@ -83,7 +83,10 @@ func (t *evalTerm) at(p Point, r *rule, out *groupRatios) {
 		d := t.em[0].at(p)
 		for g := range t.w {
 			k := t.pw[0][r.power[g]] * t.rot[0].at(t.em[0], p, r.power[g])
-			out[g] = t.w[g].ratio(density{k * d.E, k * d.H})
+			out[g] = 0
+			if k > 0 { // at the very centre 0 times infinity would be NaN
+				out[g] = t.w[g].ratio(density{k * d.E, k * d.H})
+			}
 		}
 		return
 	}
@@ -92,8 +95,10 @@ func (t *evalTerm) at(p Point, r *rule, out *groupRatios) {
 		d := em.at(p)
 		for kind := range sum {
 			k := math.Sqrt(t.pw[i][kind] * t.rot[i].at(em, p, powerKind(kind)))
-			sum[kind].E += k * math.Sqrt(d.E)
-			sum[kind].H += k * math.Sqrt(d.H)
+			if k > 0 {
+				sum[kind].E += k * math.Sqrt(d.E)
+				sum[kind].H += k * math.Sqrt(d.H)
+			}
 		}
 	}
 	for g := range t.w {
@@ -114,7 +119,10 @@ func (t *evalTerm) over(b box, r *rule, lo, hi *groupRatios) {
 				klo, khi = k*x.Lo, k*x.Hi
 			}
 			lo[g] = t.w[g].ratio(density{klo * d.Lo.E, klo * d.Lo.H})
-			hi[g] = t.w[g].ratio(density{khi * d.Hi.E, khi * d.Hi.H})
+			hi[g] = 0
+			if khi > 0 { // no power against this group: not even at the centre, where 0 times infinity would be NaN
+				hi[g] = t.w[g].ratio(density{khi * d.Hi.E, khi * d.Hi.H})
+			}
 		}
 		return
 	}
