@@ -32,12 +32,13 @@ func (s *madeSite) between(lo, hi float64) float64 { return lo + (hi-lo)*s.r.Flo
 func (s *madeSite) chance(p float64) bool          { return s.r.Float64() < p }
 
 // madeOutlines are the shapes of a made site's surface, in m before scaling:
-// grid-parallel, slanting through corners of the lattice, concave, with holes.
+// grid-parallel, slanting through corners of the lattice, concave, nearly grid-parallel, with holes.
 var madeOutlines = [][]Ring{
 	{{{0, 0}, {10, 0}, {10, 10}, {0, 10}, {0, 0}}},
 	{{{0, 0}, {10, 0}, {10, 4}, {5, 4}, {5, 10}, {0, 10}, {0, 0}}, {{1, 1}, {1, 2.5}, {3, 2.5}, {3, 1}, {1, 1}}},
 	{{{5, 0}, {10, 5}, {5, 10}, {0, 5}, {5, 0}}, {{5, 4}, {4, 5}, {5, 6}, {6, 5}, {5, 4}}},
 	{{{0.3, 0.1}, {9.7, 1.9}, {7.2, 5.3}, {9.1, 9.9}, {4.4, 6.1}, {0.9, 8.8}, {2.1, 4.7}, {0.3, 0.1}}},
+	{{{0, 0}, {10, 1e-10}, {10 + 1e-12, 10}, {0.5, 10 - 1e-9}, {0, 0}}},
 	{{{0, 0}, {10, 0.37}, {9.2, 8.1}, {1.3, 9.4}, {0, 0}}, {{2, 2}, {4, 4.1}, {4.6, 2.2}, {2, 2}}, {{6, 3}, {5.5, 6.5}, {8, 5}, {6, 3}}},
 }
 

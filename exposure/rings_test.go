@@ -184,7 +184,7 @@ func windings(m MultiPolygon) string {
 		sort.Slice(hits, func(i, j int) bool { return hits[i].x < hits[j].x })
 		n := 0
 		for i, h := range hits {
-			n -= h.d
+			n += h.d
 			if (n < 0 || n > 1) && (i+1 == len(hits) || hits[i+1].x-h.x > 1e-8) {
 				return fmt.Sprintf("at (%v, %v) the lines run round %d times", h.x, y, n)
 			}
