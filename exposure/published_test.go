@@ -26,9 +26,6 @@ func (r publishedRow) num(column string) float64 {
 	return v
 }
 
-// has reports whether the cell is filled.
-func (r publishedRow) has(column string) bool { return r.cells[column] != "" }
-
 // readPublished reads a value table: a header row, then one row for each value.
 func readPublished(t *testing.T, file string) []map[string]string {
 	t.Helper()
