@@ -7,6 +7,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"example.org/standclear/exposure"
+	"example.org/standclear/exposure/units"
 )
 
 type distanceOptions struct {
@@ -14,6 +15,8 @@ type distanceOptions struct {
 	direction string
 	classes   []string
 	of        []string
+	coverage  string
+	seed      uint64
 }
 
 func newDistance(std streams) *cobra.Command {
@@ -29,6 +32,8 @@ func newDistance(std streams) *cobra.Command {
 	o.register(c)
 	c.Flags().StringVar(&o.direction, "direction", "", "outermost crossing along `AZIMUTH,ELEVATION` in degrees (azimuth clockwise from the site's y axis) in place of the six extents")
 	c.Flags().StringSliceVar(&o.of, "of", nil, "`WHICH` of rows, housings, all; everything where left out")
+	c.Flags().StringVar(&o.coverage, "coverage", "", "tell too the distance that covers this `SHARE` of what the data's standard uncertainties allow, such as 95%")
+	c.Flags().Uint64Var(&o.seed, "seed", exposure.DefaultSeed, "`SEED` of the draws of --coverage")
 	classFlag(c, &o.classes)
 	return c
 }
@@ -41,6 +46,16 @@ func runDistance(ctx context.Context, std streams, o distanceOptions, path strin
 			return err
 		}
 		q.Direction = d
+	}
+	if o.coverage != "" {
+		p, err := positive("--coverage", o.coverage, "95%", units.Share)
+		if err != nil {
+			return err
+		}
+		if p <= 0.5 || p >= 1 {
+			return usageError{"--coverage", o.coverage, "is not between 50% and 100%; write one such as 95%"}
+		}
+		q.Coverage = &exposure.Coverage{Probability: p, Seed: o.seed}
 	}
 	if err := chosen("--of", "a choice", o.of, []string{"rows", "housings", "all"}); err != nil {
 		return err
@@ -76,10 +91,40 @@ func runDistance(ctx context.Context, std streams, o distanceOptions, path strin
 }
 
 func printDistances(std streams, distances []exposure.Distance, ray bool) error {
+	show := printExtents
 	if ray {
-		return printRays(std, distances)
+		show = printRays
 	}
-	return printExtents(std, distances)
+	if err := show(std, distances); err != nil {
+		return err
+	}
+	if err := printCovered(std, distances); err != nil {
+		return err
+	}
+	return printDistanceNotes(std, distances)
+}
+
+// printCovered prints the quantiles of --coverage, and nothing without it.
+func printCovered(std streams, distances []exposure.Distance) error {
+	t := newTable("of", "class", "direction", ">distance [m]", ">covering [m]", ">95 % interval [m]", ">trials", "mostly from")
+	share := 0.0
+	for _, d := range distances {
+		c := d.Covered
+		if c == nil {
+			continue
+		}
+		share = c.Probability
+		most := ""
+		if len(c.Inputs) > 0 {
+			most = fmt.Sprintf("%s (%s m)", c.Inputs[0].Input, sig(c.Inputs[0].DeviationM))
+		}
+		t.add(subject(d), d.Class, d.Direction, reach(d), metres(c.DistanceM), position(c.LowM)+" to "+position(c.HighM), fmt.Sprint(c.Trials), most)
+	}
+	if len(t.rows) == 0 {
+		return nil
+	}
+	fmt.Fprintf(std.out, "\nDistances that cover %s %% of what the data's standard uncertainties allow (the part of one input alone in brackets, as a standard deviation)\n", plain(share*100))
+	return t.print(std.out)
 }
 
 func subject(d exposure.Distance) string {
@@ -97,10 +142,7 @@ func printRays(std streams, distances []exposure.Distance) error {
 	for _, d := range distances {
 		t.add(subject(d), d.Class, sig(d.AzimuthDeg), sig(d.ElevationDeg), reach(d), beyond(d), d.GovernedBy)
 	}
-	if err := t.print(std.out); err != nil {
-		return err
-	}
-	return printDistanceNotes(std, distances)
+	return t.print(std.out)
 }
 
 // printExtents prints one line for each subject and class with its six extents.
@@ -140,7 +182,7 @@ func printExtents(std streams, distances []exposure.Distance) error {
 			return err
 		}
 	}
-	return printDistanceNotes(std, distances)
+	return nil
 }
 
 // reach is a distance as people keep it, or the word that stands for it.

@@ -121,6 +121,9 @@ func TestHelpExamplesRun(t *testing.T) {
 // TestInterruptLeavesNothing interrupts the main job while it computes: exit
 // status 1, one line, and no folder or file that was not there before.
 func TestInterruptLeavesNothing(t *testing.T) {
+	if testing.Short() {
+		t.Skip("starts the main job")
+	}
 	dir := t.TempDir()
 	// A line every centimetre takes far longer than the wait before the signal.
 	cmd := exec.Command("standclear", "assess", "--demo", "-o", "out", "--resolution", "0.01", "--quiet")

@@ -28,9 +28,12 @@ func progress(ctx context.Context, std streams, what string, quiet bool) (tell f
 	tell = func(done float64) {
 		mu.Lock()
 		defer mu.Unlock()
-		// Workers report out of order; the bar never goes back, and it is
-		// completed by end alone.
-		if n := int64(done * progressSteps); n > most && n < progressSteps {
+		// Workers report out of order, and the bar does not go back, but for
+		// the start of the next part of the work. End alone completes it.
+		switch n := int64(done * progressSteps); {
+		case n >= progressSteps:
+			most = 0
+		case n > most:
 			most = n
 			bar.SetCurrent(n)
 		}
