@@ -11,7 +11,7 @@ import (
 	"github.com/stretchr/testify/require"
 
 	"example.org/standclear/antenna"
-	"example.org/standclear/exposure"
+	"example.org/standclear/exposure/survey"
 )
 
 var sourceMark = regexp.MustCompile(`Source:\s+\[([A-Za-z0-9-]+)\]`)
@@ -60,7 +60,7 @@ func isNumber(e ast.Expr) bool {
 
 func TestFormulasNameTheirSource(t *testing.T) {
 	known := map[string]bool{}
-	for _, m := range exposure.Methods() {
+	for _, m := range survey.Methods() {
 		known[m.ID] = true
 	}
 	formulas := 0
@@ -106,7 +106,7 @@ func TestMethodsAreCompleteAndChecked(t *testing.T) {
 		}
 	}
 	seen := map[string]bool{}
-	for _, m := range exposure.Methods() {
+	for _, m := range survey.Methods() {
 		assert.False(t, seen[m.ID], "[%s] stands twice", m.ID)
 		seen[m.ID] = true
 		v := reflect.ValueOf(m)
@@ -122,8 +122,8 @@ func TestMethodsAreCompleteAndChecked(t *testing.T) {
 
 // Methods hands out copies: nobody can change the table behind its back.
 func TestMethodsAreCopied(t *testing.T) {
-	a := exposure.Methods()
+	a := survey.Methods()
 	require.NotEmpty(t, a)
 	a[0] = antenna.MethodNote{}
-	assert.NotEmpty(t, exposure.Methods()[0].ID)
+	assert.NotEmpty(t, survey.Methods()[0].ID)
 }
