@@ -9,7 +9,7 @@ import (
 
 // choose sets the emitter of a source by its method column, and says why.
 func (c *compiled) choose(s *Source, ground Ground) error {
-	b := builder{compiled: c, s: s, p: s.place(), lambda: Wavelength(s.FrequencyHz), k: Wavenumber(s.FrequencyHz)}
+	b := builder{compiled: c, s: s, ground: ground, p: s.place(), lambda: Wavelength(s.FrequencyHz), k: Wavenumber(s.FrequencyHz)}
 	b.why = "as the method column asks"
 	switch s.Method {
 	case MethodAuto, "":
@@ -32,6 +32,7 @@ func (c *compiled) choose(s *Source, ground Ground) error {
 type builder struct {
 	*compiled
 	s         *Source
+	ground    Ground
 	p         placement
 	lambda, k float64
 }
@@ -55,8 +56,7 @@ func (b *builder) auto() error {
 			return b.far()
 		}
 		b.why = "a small source with all its fields"
-		b.small()
-		return nil
+		return b.small()
 	case PatternDish:
 		b.why = "a dish has an aperture"
 		return b.dish()
@@ -71,17 +71,22 @@ func (b *builder) auto() error {
 
 // set finishes the choice. reactive says whether the method stops at lambda/(2
 // pi).
-func (b *builder) set(em emitter, method string, reactive bool) {
+func (b *builder) set(em emitter, method string, reactive bool) error {
 	b.em, b.method = em, method
 	b.reactive = 0
 	if reactive {
 		b.reactive = b.p.reactive
 	}
+	if b.ground.Method != GroundFresnel || !b.takesGround {
+		return nil
+	}
+	var err error
+	b.em, err = b.overGround(em)
+	return err
 }
 
 func (b *builder) far() error {
-	b.set(newFarField(b.p, b.s.Pattern, float64(b.s.Gain)), string(MethodFarField), true)
-	return nil
+	return b.set(newFarField(b.p, b.s.Pattern, float64(b.s.Gain)), string(MethodFarField), true)
 }
 
 // linear reports whether the polarization is one that a single wire can have.
@@ -115,8 +120,7 @@ func (b *builder) thinWire() error {
 		}
 		length := b.s.LengthM
 		if length == 0 && b.s.PatternKind == PatternShort {
-			b.small()
-			return nil
+			return b.small()
 		}
 		if length == 0 {
 			length = b.lambda / 2
@@ -129,12 +133,11 @@ func (b *builder) thinWire() error {
 	if err != nil {
 		return err
 	}
-	b.set(w, string(MethodWire), false)
-	return nil
+	return b.set(w, string(MethodWire), false)
 }
 
 // small is a short dipole or a small loop.
-func (b *builder) small() {
+func (b *builder) small() error {
 	line := b.along()
 	loop := b.s.PatternKind == PatternLoop
 	if loop {
@@ -145,7 +148,7 @@ func (b *builder) small() {
 			line.dir = b.p.axes.Up
 		}
 	}
-	b.set(newElementary(b.p, line, b.k, float64(b.s.Gain), loop), string(b.s.PatternKind), false)
+	return b.set(newElementary(b.p, line, b.k, float64(b.s.Gain), loop), string(b.s.PatternKind), false)
 }
 
 // dish is method aperture.
@@ -169,8 +172,7 @@ func (b *builder) dish() error {
 		}
 	}
 	b.warn("a strongly tapered dish can exceed the near-field formula on its axis, up to 6 P/A = %.4g W/m2 at its mean power (a choice of this project)", 1.5*ApertureSurfaceDensity(b.s.Power.ThermalW(), d))
-	b.set(newAperture(b.p, b.s.Pattern, float64(b.s.Gain), d, eta, b.lambda, b.s.SweepRad), string(MethodAperture), false)
-	return nil
+	return b.set(newAperture(b.p, b.s.Pattern, float64(b.s.Gain), d, eta, b.lambda, b.s.SweepRad), string(MethodAperture), false)
 }
 
 // warn adds to what the source's figures do not cover.
@@ -187,8 +189,7 @@ func (b *builder) cylinder() error {
 		return fmt.Errorf("method cylindrical needs the length of the array")
 	}
 	b.short(b.s.LengthM)
-	b.set(newCylindrical(b.p, b.s.Pattern, b.s.Gain, b.s.LengthM, b.s.ElectricalTiltRad), string(MethodCylindrical), true)
-	return nil
+	return b.set(newCylindrical(b.p, b.s.Pattern, b.s.Gain, b.s.LengthM, b.s.ElectricalTiltRad), string(MethodCylindrical), true)
 }
 
 // noEnvelope refuses the envelope of many beams where one beam is computed.
@@ -231,8 +232,7 @@ func (b *builder) elements() error {
 		return err
 	}
 	b.warn("the array's waves carry %.3g of its power, by integration over the sphere; method array is not scaled up", a.integral)
-	b.set(a, string(MethodArray), true)
-	return nil
+	return b.set(a, string(MethodArray), true)
 }
 
 // panel is what auto takes for a panel.
@@ -249,10 +249,9 @@ func (b *builder) panel() error {
 	}
 	length := b.s.LengthM
 	b.why = fmt.Sprintf("a panel with a length: %d elements %.4g m apart, %s; with the cylindrical model and the pattern to %.4g m", len(a.z), a.spacing, scaled, FarFieldDistance(length, b.lambda))
-	b.set(&panel{
+	return b.set(&panel{
 		farField: *newFarField(b.p, b.s.Pattern, float64(b.s.Gain)), array: a,
 		cylinder: newCylinder(b.s.Pattern, b.s.Gain, length, b.s.ElectricalTiltRad),
 		edge:     FarFieldDistance(length, b.lambda), half: length / 2, builtIn: b.s.PatternKind != PatternFile,
 	}, "panel", true)
-	return nil
 }

@@ -85,6 +85,9 @@ func (m *Model) fieldAt(pl *Place, sets map[float64]*fieldSet) (PointResult, err
 	if pl.To < pl.From || pl.From < 0 {
 		return PointResult{}, fmt.Errorf("place %s: a body from %v to %v m", pl.ID, pl.From, pl.To)
 	}
+	if low := m.lowFor(pl.At.Z + pl.From); low != "" {
+		return PointResult{}, fmt.Errorf("place %s lies %s", pl.ID, low)
+	}
 	set := m.fieldSet(pl, sets)
 	res := PointResult{ID: pl.ID, XM: pl.At.X, YM: pl.At.Y, ZM: pl.At.Z, Class: pl.Class, Place: pl}
 	foot, head := pl.At.Z+pl.From, pl.At.Z+pl.To

@@ -30,7 +30,8 @@ type compiled struct {
 	reactive    float64 // depth of the region its method does not reach, m
 	takesGround bool    // the ground's field factor applies
 	rot         *rotation
-	caveats     []string // of the method chosen
+	caveats     []string     // of the method chosen
+	plane       *groundPlane // the ground whose two rays the method follows, or nil
 	info        SourceInfo
 }
 

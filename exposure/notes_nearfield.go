@@ -60,4 +60,12 @@ var nearFieldNotes = []antenna.MethodNote{
 		Source:  "a choice of this project",
 		Check:   "TestPanelIsTheLargerOfItsParts",
 	},
+	{
+		ID: "FRESNEL-1", Name: "ground: fresnel",
+		Formula: "direct and reflected ray, E_s' = R_h E_s, H_s' = R_v H_s, E' = E_s' s - Z0 k_r x (H_s' s), vector sums of E and of H; R_h = (sin psi - q)/(sin psi + q), R_v = (eps sin psi - q)/(eps sin psi + q), q = sqrt(eps - cos^2 psi)",
+		Range:   "far field and each element of an array, both ends a wavelength or more above flat ground; for the other methods the amplitudes of source and image add",
+		Errs:    "no surface wave; flat, smooth, even ground reflects more than real ground; boundaries of arrays take the sum of the reflected amplitudes",
+		Source:  "textbook: Fresnel coefficients as in Recommendation ITU-R P.527 and Balanis, Advanced Engineering Electromagnetics (1989), section 5.3, from memory",
+		Check:   "TestFresnelCoefficients",
+	},
 }

@@ -16,6 +16,17 @@ func (r *rod) polar(q Point) (rho, z float64) {
 	return d.Sub(r.dir.Scale(z)).Norm(), z
 }
 
+// outward is the unit vector from the line to a point, on the line itself any
+// that stands across it.
+func (r *rod) outward(q Point) Point {
+	d := q.Sub(r.pos)
+	w := d.Sub(r.dir.Scale(d.Dot(r.dir)))
+	if n := w.Norm(); n > 1e-9*d.Norm() {
+		return w.Scale(1 / n)
+	}
+	return r.across()
+}
+
 // ring is what a box is to whatever is round about a line: the intervals of
 // distance and height that hold every point of it, the centre's own, and a
 // radius in the plane of distance and height: no point of the box lies farther

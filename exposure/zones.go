@@ -199,6 +199,9 @@ func (m *Model) zone(ctx context.Context, g region, r *rule, q *ZoneQuery) (Zone
 	z.MaxAt = [3]float64{at.X, at.Y, at.Z}
 	z.Covered = len(r.uncovered) == 0
 	z.Verdict, z.Reason = zoneVerdict(&z, r, top)
+	if low := m.lowFor(g.from); g.frame == siteFrame && low != "" && z.Verdict != Above {
+		z.Verdict, z.Reason = NotAssessed, "part of it lies "+low
+	}
 	return z, ctx.Err()
 }
 
