@@ -81,8 +81,8 @@ func inputWidth(t *exposure.InputTable, i int) float64 {
 			longest = max(longest, utf8.RuneCountInString(row.Cells[i]))
 		}
 	}
-	if longest == 0 {
-		return 0
+	if longest == 0 && len(t.Rows) > 0 {
+		return 0 // of a table without rows, the headers are shown
 	}
 	for word := range strings.FieldsSeq(t.Columns[i].Header) {
 		longest = max(longest, utf8.RuneCountInString(word)+1)
