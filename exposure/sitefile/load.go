@@ -14,6 +14,7 @@ import (
 
 	"example.org/standclear/antenna"
 	"example.org/standclear/exposure"
+	"example.org/standclear/exposure/survey"
 	"example.org/standclear/exposure/units"
 	"example.org/standclear/limits"
 )
@@ -27,26 +28,16 @@ type Options struct {
 	// Figures left zero are taken from the site table.
 	Ground      *exposure.Ground
 	Windows1252 bool // CSV files that are not UTF-8 are Windows-1252
+	UnitsRow    bool // the row below the header of readings and logs holds units
 }
 
 // Load reads a site: a folder of CSV files, or one workbook. The error is a
 // Faults with everything that is wrong, or what kept a file from being read.
 func Load(name string, o Options) (*exposure.Site, error) {
-	info, err := os.Stat(name)
-	if errors.Is(err, fs.ErrNotExist) {
-		return nil, Faults{{File: name, Message: "there is no such file or folder; give the site folder or the workbook"}}
-	}
+	l, err := open(name, o)
 	if err != nil {
 		return nil, err
 	}
-	if info.IsDir() {
-		return LoadFS(os.DirFS(name), o)
-	}
-	if strings.EqualFold(filepath.Ext(name), ".csv") {
-		return nil, Faults{{File: name, Message: "this is one table of a site; give the folder that it lies in"}}
-	}
-	l := newLoader(os.DirFS(filepath.Dir(name)), o)
-	l.workbook(filepath.Base(name), nil)
 	return l.site()
 }
 
@@ -118,6 +109,7 @@ type loader struct {
 	classes  []string
 	patterns map[patternKey]*patternFile
 	built    map[builtKey]antenna.Pattern
+	survey   survey.Survey
 }
 
 func newLoader(fsys fs.FS, o Options) *loader {
@@ -150,6 +142,11 @@ func (l *loader) record(name string, data []byte) {
 
 func (l *loader) csv(file, table string, data []byte) {
 	l.record(file, data)
+	l.rowsOf(file, table, data)
+}
+
+// rowsOf reads the text of a CSV file that is recorded already.
+func (l *loader) rowsOf(file, table string, data []byte) {
 	g, faults := readCSV(file, table, data, l.options.Windows1252)
 	if len(faults) > 0 {
 		l.faults = append(l.faults, faults...)
@@ -245,6 +242,11 @@ func (l *loader) folder() {
 			l.fatal = err
 			return
 		}
+		if t.Name == "readings" {
+			l.record(name, data)
+			l.rowsOf(name, t.Name, l.exported(name, data, byTable["columns"]))
+			continue
+		}
 		l.csv(name, t.Name, data)
 	}
 }
@@ -281,6 +283,7 @@ func (l *loader) bindAll() {
 	}
 	for _, g := range l.grids {
 		if g.table != "columns" {
+			l.straighten(g)
 			l.tables[g.table] = l.bind(g)
 		}
 	}
@@ -313,8 +316,32 @@ func (l *loader) bindColumns(g *grid) {
 			l.fault(r, "from", "%q is mapped twice; keep one row", r.text("from"))
 			continue
 		}
-		l.mappings[name][from] = mapping{r.text("to"), r.text("unit")}
+		l.mappings[name][from] = mapping{r.text("to"), l.mappedUnit(r)}
 	}
+}
+
+// mappedUnit returns the unit of a mapped column, or the zone of its times.
+func (l *loader) mappedUnit(r *record) string {
+	text := r.text("unit")
+	if text == "" {
+		return ""
+	}
+	if strings.EqualFold(r.text("to"), "time") {
+		if _, ok := parseZone(text); !ok {
+			l.fault(r, "unit", "%q is not a zone of time; write its offset, such as +01:00 or UTC", text)
+		}
+		return text
+	}
+	u, ok := units.Lookup(text)
+	if !ok {
+		hint := "write a unit such as V/m, A/m, uT or W/m2"
+		if near := units.Near(text); near != "" {
+			hint = "did you mean " + near + "?"
+		}
+		l.fault(r, "unit", "%q is not a unit that can stand here; %s", text, hint)
+		return ""
+	}
+	return u.Symbol
 }
 
 // didYouMean is the end of a message about an unknown name.
@@ -414,6 +441,7 @@ func (l *loader) site() (*exposure.Site, error) {
 	s.Surfaces = l.surfaceTable()
 	s.Places = l.places()
 	s.Sources = l.antennas()
+	l.surveyTables(s)
 	if err := l.failed(); err != nil {
 		return nil, err
 	}

@@ -1,7 +1,5 @@
 package sitefile
 
-import "example.org/standclear/exposure/units"
-
 var readingsTable = TableSchema{
 	Name: "readings",
 	Help: "what was measured",
@@ -11,6 +9,8 @@ var readingsTable = TableSchema{
 		quantity("x", "m", "east of the site's origin", unless("place")),
 		quantity("y", "m", "north of the site's origin", unless("place")),
 		quantity("z", "m", "height above the site datum", unless("place")),
+		quantity("latitude", "deg", "WGS 84 latitude, in place of y", between(-90, 90), rare),
+		quantity("longitude", "deg", "WGS 84 longitude, in place of x", between(-180, 180), rare),
 		quantity("height", "m", "of the probe above that place", blank("0"), atLeast(0), example("1.5")),
 		column("time", Moment, "when, RFC 3339", []option{example("2026-03-31T10:05:00Z")}),
 		text("instrument", "of the instruments table", required, example("M1")),
@@ -27,8 +27,8 @@ var readingsTable = TableSchema{
 		quantity("to", "MHz", "upper edge of the band read", moreThan(0)),
 		choice("detector", "rms|peak", "of the instrument"),
 		text("group", "readings averaged together: the heights of one spot"),
-		text("series", "name of a time log"),
-		text("scale to maximum", "a named method and its figures"),
+		text("series", "name of a time log: of rows of this table, or of a file in the site folder"),
+		text("scale to maximum", "a named method and its figures, such as LTE reference signal: bandwidth 20 MHz, boost 3 dB, ports 2"),
 		text("antennas", "ids the reading is of"),
 		text("note", "kept and printed, never interpreted"),
 	},
@@ -76,7 +76,7 @@ var columnsTable = TableSchema{
 		text("table", "which table", required, example("readings")),
 		text("from", "header as the export has it", required, example("Level")),
 		text("to", "our column", required, example("E")),
-		symbol("unit", units.None, "of the export's figures", example("V/m")),
+		text("unit", "of the export's figures; of times their zone, such as +01:00", example("V/m")),
 	},
 }
 
