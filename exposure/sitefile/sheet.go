@@ -20,7 +20,9 @@ func WriteSheet(w io.Writer, name string, o Options, planned []survey.Planned) e
 		return err
 	}
 	if l.fatal == nil && o.LimitsFile != "" {
-		l.grids = slices.DeleteFunc(l.grids, func(g *grid) bool { return g.table == "limits" || g.table == "limits about" || g.table == "limits spots" })
+		l.grids = slices.DeleteFunc(l.grids, func(g *grid) bool {
+			return g.table == "limits" || g.table == "limits about" || g.table == "limits spots"
+		})
 		l.limitsFile(o.LimitsFile)
 	}
 	if l.fatal != nil {
@@ -124,7 +126,6 @@ func numberIn(c ColumnSchema, si float64) string {
 
 // number4 writes an expected figure with four digits.
 func number4(v float64) string { return fmt.Sprintf("%.4g", v) }
-
 
 func schemaUnit(c ColumnSchema) units.Unit {
 	u, _ := units.Lookup(c.Unit)

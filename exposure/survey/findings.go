@@ -129,10 +129,10 @@ func (s *session) suspect(x *exposure.Source, p *part, all []*part, share, facto
 	}
 	same, housing := s.witnesses(x, p, all)
 	if len(same) > 0 {
-		why(1, "%s, of this row as well, lie above prediction too: its power, carriers, loss or gain rather than one place", strings.Join(same, ", "))
+		why(1, "also above prediction and of this row: %s, which speaks for its power, carriers, loss or gain", strings.Join(same, ", "))
 	}
 	if len(housing) > 0 {
-		why(0.5, "%s, of other rows in the housing %s, agree: not its place, azimuth or tilt", strings.Join(housing, ", "), x.Housing)
+		why(0.5, "as predicted, from other rows in the housing %s: %s, which speaks against its place, azimuth or tilt", x.Housing, strings.Join(housing, ", "))
 	}
 	for _, text := range s.unlikeSiblings(x) {
 		why(1.5, "%s", text)
@@ -212,7 +212,7 @@ func (s *session) unlikeSiblings(x *exposure.Source) []string {
 		if own >= theirs || slices.ContainsFunc(siblings, func(y *exposure.Source) bool { return c.of(y) != theirs }) {
 			continue
 		}
-		out = append(out, fmt.Sprintf("its %s is %.4g where %s of the same service %s %.4g: %.1f dB more with theirs", c.name, own, strings.Join(ids, ", "), haveWord(len(ids)), theirs, 10*math.Log10(theirs/own)))
+		out = append(out, fmt.Sprintf("its %s: %.4g where %s of the same service %s %.4g: %.1f dB more with theirs", c.name, own, strings.Join(ids, ", "), haveWord(len(ids)), theirs, 10*math.Log10(theirs/own)))
 	}
 	return out
 }

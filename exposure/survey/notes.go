@@ -127,9 +127,9 @@ var methodNotes = []antenna.MethodNote{
 	},
 	{
 		ID: "RDG-SUM", Name: "sum over bands at a place",
-		Formula: "E = sqrt(sum E^2), ratio = sum of ratios over bands; readings whose bands overlap count once, by the larger of the wide one and the sum of the narrow ones",
+		Formula: "E = sqrt(sum E^2), ratio = sum of ratios over bands; of a wide reading only the rest that narrow ones in its band leave, sqrt(E_wide^2 - sum E_narrow^2), against the lowest level of the band",
 		Range:   "readings of one place and class",
-		Errs:    "high where the bands hold the same signal twice",
+		Errs:    "the rest errs high by its lowest level, and either way by the uncertainty of a difference",
 		Source:  "ICNIRP 2020 (Health Physics 118:483-524), sum over frequencies; overlap is a choice of this project",
 		Check:   "TestPlacesAddOverBands",
 		Ours:    true,

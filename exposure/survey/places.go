@@ -1,8 +1,11 @@
 package survey
 
 import (
+	"cmp"
+	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"example.org/standclear/exposure"
 )
@@ -37,16 +40,20 @@ func (s *session) places() {
 }
 
 // place adds up one place. Bands that overlap hold the same signals: of each
-// such bundle the wide reading or the sum of the narrow ones counts, whichever
-// is larger.
+// such bundle the narrow readings count, and of a wide one the rest that they
+// leave unaccounted for.
+// Source: [RDG-SUM].
 func (s *session) place(id string, parts []*part) PlaceResult {
 	res := PlaceResult{Place: id, Counted: []string{}}
 	class := parts[0].place.Class
 	var counted []*part
-	for _, bundle := range bundles(parts, class) {
-		best, rest := heavier(s, bundle, class)
-		counted = append(counted, best...)
-		for _, p := range rest {
+	for _, bundle := range bundles(parts) {
+		narrow, rest, others := s.sortOut(bundle, class)
+		counted = append(counted, narrow...)
+		if rest != nil {
+			counted = append(counted, rest)
+		}
+		for _, p := range others {
 			res.NotCounted = append(res.NotCounted, p.id)
 		}
 	}
@@ -84,8 +91,14 @@ func (s *session) place(id string, parts []*part) PlaceResult {
 	}
 	j := decide(s.rule, class, func(k float64) (float64, string) { return s.sum(counted, class, k) }, res.ExpandedDB, reasons)
 	for _, p := range counted {
-		if p.result.Verdict == exposure.Above {
+		if p.kind != "rest" && p.result.Verdict == exposure.Above {
 			j.Verdict = exposure.Above
+		}
+	}
+	for _, p := range counted {
+		if p.kind == "rest" && p.whole.result.Verdict == exposure.Above && j.Verdict == exposure.Within {
+			text := fmt.Sprintf("%s alone, held against the lowest level of its band, is above; the readings by frequency account for all but %.3g V/m of it", p.whole.id, p.e)
+			j.Reason = strings.TrimPrefix(j.Reason+"; "+text, "; ")
 		}
 	}
 	res.Judgement = j
@@ -119,7 +132,7 @@ func (s *session) sum(parts []*part, class string, factor float64) (float64, str
 
 // bundles sorts the parts of a place into bundles of overlapping bands. Readings
 // of different antennas in one band are different signals.
-func bundles(parts []*part, class string) [][]*part {
+func bundles(parts []*part) [][]*part {
 	set := make([]int, len(parts))
 	for i := range set {
 		set[i] = i
@@ -164,11 +177,12 @@ func different(a, b []string) bool {
 	return !slices.ContainsFunc(a, func(x string) bool { return slices.Contains(b, x) })
 }
 
-// heavier picks what of a bundle counts: one of its parts alone, or the most of
-// its narrow parts that do not overlap each other.
-func heavier(s *session, bundle []*part, class string) (best, rest []*part) {
+// sortOut picks what of a bundle counts: its narrow readings that do not overlap
+// each other (of two of one width the one with the larger ratio), and what the
+// widest field leaves beyond them. others are the readings that do not count.
+func (s *session) sortOut(bundle []*part, class string) (narrow []*part, rest *part, others []*part) {
 	if len(bundle) == 1 {
-		return bundle, nil
+		return bundle, nil, nil
 	}
 	ratio := func(p *part) float64 {
 		r, _ := s.sum([]*part{p}, class, 1)
@@ -176,30 +190,50 @@ func heavier(s *session, bundle []*part, class string) (best, rest []*part) {
 	}
 	byWidth := slices.Clone(bundle)
 	slices.SortStableFunc(byWidth, func(a, b *part) int {
-		if d := (a.hi - a.lo) - (b.hi - b.lo); d != 0 {
-			return int(math.Copysign(1, d))
-		}
-		return int(math.Copysign(1, ratio(b)-ratio(a)))
+		return cmp.Or(cmp.Compare(a.hi-a.lo, b.hi-b.lo), cmp.Compare(ratio(b), ratio(a)))
 	})
-	var narrow []*part
 	for _, p := range byWidth {
-		if len(bundles(append(slices.Clone(narrow), p), class)) == len(narrow)+1 {
+		if len(bundles(append(slices.Clone(narrow), p))) == len(narrow)+1 {
 			narrow = append(narrow, p)
 		}
 	}
-	total, _ := s.sum(narrow, class, 1)
-	best = narrow
+	most := 0.0
 	for _, p := range bundle {
-		if r := ratio(p); r > total {
-			best, total = []*part{p}, r
+		if slices.Contains(narrow, p) {
+			continue
 		}
-	}
-	for _, p := range bundle {
-		if !slices.Contains(best, p) {
-			rest = append(rest, p)
+		others = append(others, p)
+		left := s.beyond(p, narrow)
+		if r := ratio(left); r > most || rest == nil {
+			most, rest = r, left
 		}
 	}
 	// In the order in which they were given.
-	slices.SortStableFunc(best, func(a, b *part) int { return slices.Index(bundle, a) - slices.Index(bundle, b) })
-	return best, rest
+	slices.SortStableFunc(narrow, func(a, b *part) int { return slices.Index(bundle, a) - slices.Index(bundle, b) })
+	if most == 0 && rest.whole.result.Verdict != exposure.Above {
+		rest = nil
+	}
+	return narrow, rest, others
+}
+
+// beyond returns what a wide reading holds beyond narrow ones that lie in its
+// band: in power, as the wide reading sees their sum.
+func (s *session) beyond(wide *part, narrow []*part) *part {
+	left := *wide
+	left.kind, left.whole, left.id = "rest", wide, "rest of "+wide.id
+	e2, share := wide.e*wide.e, wide.share
+	for _, p := range narrow {
+		inside := p.lo >= wide.lo*(1-edge) && p.hi <= wide.hi*(1+edge)
+		switch {
+		case !inside && (p.lo != wide.lo || p.hi != wide.hi):
+		case wide.quantity == ShareOfLimit:
+			r, _ := p.ratio(s.levelsFor(p, wide.shareOf), 1, true)
+			share -= r
+		default:
+			e2 -= p.e * p.e
+		}
+	}
+	left.e, left.share = math.Sqrt(max(e2, 0)), max(share, 0)
+	left.largestE, left.largestS = left.e, left.share
+	return &left
 }

@@ -34,6 +34,7 @@ type part struct {
 	reasons  []string
 	heights  []exposure.Place // the points that the figure is of
 	result   *Judgement
+	whole    *part // of a rest: the reading it is left of
 	compare  *Comparison
 }
 
