@@ -65,7 +65,13 @@ func (b *builder) auto() error {
 			return b.panel()
 		}
 	}
-	b.why = "no length or dish is stated that a near-field method could use"
+	b.why = "no near-field method fits the pattern " + string(b.s.PatternKind)
+	switch b.s.PatternKind {
+	case PatternActive:
+		b.why = "the envelope of many beams has a far field only"
+	case PatternSector, PatternOmni, PatternBeamwidth, PatternFile:
+		b.why = "no length is stated that a near-field method could use"
+	}
 	return b.far()
 }
 
