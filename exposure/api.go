@@ -41,4 +41,8 @@ type ZoneQuery struct {
 type AssessOptions struct {
 	Program     string  // name and version, printed in every output
 	ResolutionM float64 // of the boundaries, 0 = 0.05
+	// Coverage, when not nil, adds to each distance of a housing and of
+	// everything together the one that covers a share of what the data's standard
+	// uncertainties make possible.
+	Coverage *Coverage
 }

@@ -128,12 +128,23 @@ func deviation(x []float64) float64 {
 // coverLine tables every member's ratio along the line and how it answers to
 // its inputs.
 func (m *Model) coverLine(e *evaluator, f frame, b bracket) *coverLine {
-	l := &coverLine{}
 	// From a third of the distance to three times, in equal steps of its
 	// logarithm: the boundary is never expected to leave that.
-	for i := 0; i < lineSamples; i++ {
-		l.at = append(l.at, b.outer*math.Pow(3, 2*float64(i)/(lineSamples-1)-1))
+	at := make([]float64, lineSamples)
+	points := make([]Point, lineSamples)
+	for i := range at {
+		at[i] = b.outer * math.Pow(3, 2*float64(i)/(lineSamples-1)-1)
+		points[i] = Point{X: at[i], Y: b.at.Y, Z: b.at.Z}
 	}
+	l := m.responses(e, f, points)
+	l.at = at
+	return l
+}
+
+// responses tables every member's ratio at up to lineSamples points of the frame,
+// and how it answers to its inputs there.
+func (m *Model) responses(e *evaluator, f frame, points []Point) *coverLine {
+	l := &coverLine{}
 	housings := map[string]int{}
 	for ti := range e.terms {
 		t := &e.terms[ti]
@@ -150,8 +161,7 @@ func (m *Model) coverLine(e *evaluator, f frame, b bracket) *coverLine {
 			u := src.Uncertainty
 			r := response{sigmaDB: math.Hypot(u.PowerDB, u.GainDB), housing: housings[key], own: t.source[j]}
 			steps := [5]float64{u.TiltRad, u.AzimuthRad, u.PositionM, u.PositionM, u.PositionM}
-			for i, x := range l.at {
-				p := Point{X: x, Y: b.at.Y, Z: b.at.Z}
+			for i, p := range points {
 				r.value[i] = logRatio(e, t, j, p)
 				for k, s := range steps {
 					if s == 0 {
@@ -207,15 +217,20 @@ func turned(v, axis Point, angle float64) Point {
 	return v.Scale(c).Add(axis.Cross(v).Scale(s)).Add(axis.Scale(axis.Dot(v) * (1 - c)))
 }
 
-// trials draws the crossing of the line n times.
-func (l *coverLine) trials(rng *rand.Rand, n int, vary [4]bool) []float64 {
-	out := make([]float64, 0, n)
-	housings, rows := 0, 0
+// counts returns the numbers of housings and of rows that draw for themselves.
+func (l *coverLine) counts() (housings, rows int) {
 	for _, t := range l.terms {
 		for i := range t {
 			housings, rows = max(housings, t[i].housing+1), max(rows, t[i].own+1)
 		}
 	}
+	return housings, rows
+}
+
+// trials draws the crossing of the line n times.
+func (l *coverLine) trials(rng *rand.Rand, n int, vary [4]bool) []float64 {
+	out := make([]float64, 0, n)
+	housings, rows := l.counts()
 	pose := make([][5]float64, housings)
 	power := make([]float64, rows)
 	shift := make([][]memberDraw, len(l.terms))

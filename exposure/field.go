@@ -53,6 +53,7 @@ func (m *Model) Field(ctx context.Context, places []Place) ([]PointResult, error
 // ground and wall: all sources together, and each alone.
 type fieldSet struct {
 	factor, ground float64
+	rules          []*rule       // as they compare a body here
 	all            []*evaluator  // by rule
 	alone          [][]*evalTerm // by rule and source; nil where the source is silent
 }
@@ -60,11 +61,19 @@ type fieldSet struct {
 func (m *Model) fieldSet(pl *Place, sets map[float64]*fieldSet) *fieldSet {
 	ground := m.placeFactor(pl)
 	factor := ground * math.Sqrt(orOne(pl.WallLoss)) // of ground and wall together
-	if s := sets[factor]; s != nil && s.ground == ground {
+	key := factor
+	if m.largestCounts(pl) {
+		key = -factor // field factors are positive: the other sign keeps them apart
+	}
+	if s := sets[key]; s != nil && s.ground == ground {
 		return s
 	}
 	s := &fieldSet{factor: factor, ground: ground}
 	for _, r := range m.rules {
+		if key < 0 {
+			r = r.asLargest()
+		}
+		s.rules = append(s.rules, r)
 		e := m.evaluator(r, nil, factor, siteFrame, 1)
 		alone := make([]*evalTerm, len(m.sources))
 		for i := range e.terms {
@@ -76,7 +85,7 @@ func (m *Model) fieldSet(pl *Place, sets map[float64]*fieldSet) *fieldSet {
 		s.all = append(s.all, e)
 		s.alone = append(s.alone, alone)
 	}
-	sets[factor] = s
+	sets[key] = s
 	return s
 }
 
@@ -93,7 +102,7 @@ func (m *Model) fieldAt(pl *Place, sets map[float64]*fieldSet) (PointResult, err
 	foot, head := pl.At.Z+pl.From, pl.At.Z+pl.To
 	heights := make([]float64, len(m.rules))
 	shown, best := foot, -1.0 // the height at which the fields are printed
-	for i, r := range m.rules {
+	for i, r := range set.rules {
 		by, at := set.all[i].body(pl.At.X, pl.At.Y, foot, head, r.anyMean)
 		heights[i] = at
 		c := m.judge(r, by, box{c: Point{X: pl.At.X, Y: pl.At.Y}}.heights(foot, head), set.ground)
@@ -104,6 +113,13 @@ func (m *Model) fieldAt(pl *Place, sets map[float64]*fieldSet) (PointResult, err
 	}
 	res.HeightM = shown - pl.At.Z
 	return res, m.parts(&res, pl, Point{X: pl.At.X, Y: pl.At.Y, Z: shown}, set, heights)
+}
+
+// largestCounts reports whether the place stands on a surface that compares the
+// largest over the body, whatever the limit rows say.
+func (m *Model) largestCounts(pl *Place) bool {
+	s := m.surface(pl.On)
+	return pl.On != "" && s != nil && s.Averaging == AveragePeak
 }
 
 // placeFactor is the ground's field factor at a place: that of the surface it

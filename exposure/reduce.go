@@ -25,6 +25,7 @@ type workProblem struct {
 	at     map[string]int // index of a transmitter
 	power  []float64      // mean power of each, W
 	rows   []workRow
+	margin float64 // how far below 1 the optimizer aims
 }
 
 // workRow is one constraint: the sum of its signals' ratios is at most 1.
@@ -41,7 +42,7 @@ type workSignal struct {
 }
 
 func newWorkProblem(m *Model, r *rule, q *WorkQuery, places []Place) *workProblem {
-	p := &workProblem{m: m, r: r, q: q, places: places, at: map[string]int{}}
+	p := &workProblem{m: m, r: r, q: q, places: places, at: map[string]int{}, margin: workMargin}
 	for i := range m.sources {
 		s := &m.sources[i]
 		t := s.src.transmitter()
@@ -69,7 +70,7 @@ func (p *workProblem) addPlace(pl *Place, sets map[float64]*fieldSet) {
 	set := p.m.fieldSet(pl, sets)
 	k := p.ruleIndex()
 	foot, head := pl.At.Z+pl.From, pl.At.Z+pl.To
-	_, at := set.all[k].body(pl.At.X, pl.At.Y, foot, head, p.r.anyMean)
+	_, at := set.all[k].body(pl.At.X, pl.At.Y, foot, head, set.rules[k].anyMean)
 	heights := []float64{at}
 	if head > foot {
 		heights = append(heights, foot, (foot+head)/2, head)
@@ -187,7 +188,7 @@ func ones(n int) []float64 {
 // row, a linear program; where rows are not linear, on tangents that are moved
 // until they settle.
 func (p *workProblem) leastPower(ctx context.Context) (*Reduction, error) {
-	return p.confirmed(ctx, "least power", func() ([]float64, string, error) {
+	return p.confirmed(ctx, PlanLeastPower, func() ([]float64, string, error) {
 		x := ones(len(p.names))
 		if p.largest(x) <= 1 {
 			return x, "", nil
@@ -233,11 +234,11 @@ func (p *workProblem) program(x0 []float64) ([]float64, error) {
 	}
 	var cons []constraint
 	for i := range p.rows {
-		if p.rows[i].ratio(ones(len(p.names))) <= 1-workMargin {
+		if p.rows[i].ratio(ones(len(p.names))) <= 1-p.margin {
 			continue // within with everything on: it can never bind
 		}
 		a, c := p.rows[i].linear(x0)
-		cons = append(cons, constraint{a, 1 - workMargin - c})
+		cons = append(cons, constraint{a, 1 - p.margin - c})
 		for t, v := range a {
 			if v > 0 && column[t] < 0 {
 				column[t] = len(used)
@@ -295,7 +296,7 @@ func (p *workProblem) program(x0 []float64) ([]float64, error) {
 
 // equal puts the same factor on every transmitter that has a part in the places.
 func (p *workProblem) equal(ctx context.Context) (*Reduction, error) {
-	return p.confirmed(ctx, "equal", func() ([]float64, string, error) {
+	return p.confirmed(ctx, PlanEqual, func() ([]float64, string, error) {
 		parts := p.contributing()
 		set := func(f float64) []float64 {
 			x := ones(len(p.names))
@@ -310,7 +311,7 @@ func (p *workProblem) equal(ctx context.Context) (*Reduction, error) {
 		lo, hi := 0.0, 1.0
 		for i := 0; i < 60; i++ {
 			mid := (lo + hi) / 2
-			if p.largest(set(mid)) <= 1-workMargin {
+			if p.largest(set(mid)) <= 1-p.margin {
 				lo = mid
 			} else {
 				hi = mid
@@ -350,7 +351,7 @@ const exactContributors = 20
 // the least power. Beyond exactContributors it switches off the largest first
 // and says so.
 func (p *workProblem) fewestOff(ctx context.Context) (*Reduction, error) {
-	return p.confirmed(ctx, "fewest off", func() ([]float64, string, error) {
+	return p.confirmed(ctx, PlanFewestOff, func() ([]float64, string, error) {
 		x := ones(len(p.names))
 		if p.largest(x) <= 1 {
 			return x, "", nil
@@ -448,6 +449,20 @@ func (p *workProblem) confirmed(ctx context.Context, name string, solve func() (
 				p.addRow(&places[i], p.m.fieldSet(&places[i], sets), points[i].ZM+points[i].HeightM)
 			}
 		}
+		if held && p.q.Surface != "" {
+			// The points found say so; the whole surface must as well.
+			within, reason, err := reduced.allWithin(ctx, p.q.Surface, p.r.class)
+			if err != nil {
+				return nil, err
+			}
+			if !within {
+				held = false
+				p.margin = math.Max(2*p.margin, 1e-3)
+			}
+			if reason != "" {
+				note = joinReasons(append([]string{"not assessed on " + p.q.Surface + " with this plan: " + reason}, notEmpty(note)...))
+			}
+		}
 		if !held && round < mostRounds-1 {
 			continue
 		}
@@ -463,12 +478,42 @@ func (p *workProblem) confirmed(ctx context.Context, name string, solve func() (
 		}
 		for i := range points {
 			if c := points[i].class(p.r.class); c.Verdict == NotAssessed {
-				out.Note = joinReasons(append([]string{"not assessed at " + points[i].ID + " with this plan: " + c.Reason}, note))
+				out.Note = joinReasons(append([]string{"not assessed at " + points[i].ID + " with this plan: " + c.Reason}, notEmpty(out.Note)...))
 			}
 		}
 		return out, ctx.Err()
 	}
 	return nil, fmt.Errorf("the plan %q does not settle", name)
+}
+
+// allWithin reports whether every point of a surface is proved within for a
+// class: the outer line is empty.
+func (m *Model) allWithin(ctx context.Context, surface, class string) (within bool, reason string, err error) {
+	r := m.rule(class)
+	top, err := m.largestOn(ctx, surface, r)
+	switch {
+	case err != nil:
+		return false, "", err
+	case top.reach != reached:
+		_, reason = zoneVerdict(&Zone{Share: 1}, r, top)
+		return true, reason, nil // what can be found is within; the rest is not assessed
+	case top.upper <= 1:
+		return true, "", nil
+	}
+	q := ZoneQuery{Surfaces: []string{surface}, ResolutionM: DefaultResolutionM, Share: 1}
+	regions, err := m.regions(&q)
+	if err != nil {
+		return false, "", err
+	}
+	z, _, _, err := m.lines(ctx, regions[0], r, &q)
+	return len(z.Outer) == 0, "", err
+}
+
+func notEmpty(s string) []string {
+	if s == "" {
+		return nil
+	}
+	return []string{s}
 }
 
 // withFactors is the model with factors on its transmitters' power; a factor of

@@ -128,6 +128,8 @@ type Distance struct {
 	Reason       string  `json:"reason,omitempty"`
 	// Covered is the distance with the coverage asked; nil where none was.
 	Covered *CoveredDistance `json:"coverage,omitempty"`
+
+	end *farEnd // where the boundary reaches farthest, nil where there is none
 }
 
 // CoveredDistance is a one-sided quantile of a distance over the standard
@@ -263,6 +265,20 @@ type Assessment struct {
 	Grids []RatioGrid `json:"-"`
 	// Profiles are ratio against distance along each row's main beam.
 	Profiles []Profile `json:"profiles,omitempty"`
+	// Work is a plan for each place and each surface that is above the limits
+	// supplied for the class that may be there.
+	Work []Work `json:"work,omitempty"`
+	// Boundaries is the schedule of barriers and signs.
+	Boundaries []Barrier `json:"barriers,omitempty"`
+	// MeasureFirst lists places by what a measurement there is worth.
+	MeasureFirst []MeasureHere `json:"measure_first,omitempty"`
+	// Assumptions are what each assumption is worth.
+	Assumptions []AssumptionSet `json:"assumptions,omitempty"`
+	// States are the operating states: everything, without standby, and each
+	// named scenario.
+	States []StateResult `json:"states,omitempty"`
+	// Coverage is what distances were asked to cover, nil for none.
+	Coverage *Coverage `json:"-"`
 }
 
 // Profile is the exposure ratio along a ray, for a figure. Each is a row alone.

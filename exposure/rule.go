@@ -106,6 +106,24 @@ type rule struct {
 	uncovered []string // why the class is not assessed wherever the covered sources do not exceed it
 }
 
+// asLargest is the rule with no body mean: the largest over the body counts for
+// every level.
+func (r *rule) asLargest() *rule {
+	if !r.anyMean {
+		return r
+	}
+	out := *r
+	out.anyMean = false
+	out.terms = append([]term(nil), r.terms...)
+	for i := range out.terms {
+		out.terms[i].w = append([]weights(nil), r.terms[i].w...)
+		for g := range out.terms[i].w {
+			out.terms[i].w[g].mean = false
+		}
+	}
+	return &out
+}
+
 // newRule looks up every level that holds for the model's sources in a class.
 func (m *Model) newRule(class string) *rule {
 	t := m.site.Limits

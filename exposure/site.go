@@ -22,7 +22,9 @@ type Site struct {
 	Limits    *limits.Table
 	// OnlyOn drops the rows on standby; every result then says so.
 	OnlyOn bool
-	Inputs Inputs
+	// Scenarios are the site with named changes.
+	Scenarios []Scenario
+	Inputs    Inputs
 }
 
 // About is what the site table says; a report prints it and computes nothing

@@ -6,8 +6,6 @@ import (
 	"fmt"
 	"math"
 	"sort"
-
-	"example.org/standclear/limits"
 )
 
 // WorkQuery asks what must be powered down so that people of a class can work
@@ -22,7 +20,21 @@ type WorkQuery struct {
 	// Share is the own exposure ratio from which a source is listed as a
 	// contributor, 0 = 0.05.
 	Share float64
+	// Plan is the plan that the switching sheet carries out, "" = least power.
+	Plan string
+	// From and To are the times of the work as the switching sheet bears them.
+	From, To string
 }
+
+// The plans of a piece of work.
+const (
+	PlanLeastPower = "least power"
+	PlanEqual      = "equal"
+	PlanFewestOff  = "fewest off"
+)
+
+// Plans returns the names of the plans in their order.
+func Plans() []string { return []string{PlanLeastPower, PlanEqual, PlanFewestOff} }
 
 // Work is the plan for one piece of work.
 type Work struct {
@@ -39,6 +51,7 @@ type Work struct {
 	StayReason    string        `json:"stay_reason"`
 	StayAskedMin  float64       `json:"stay_asked_min,omitempty"`
 	Contributors  []Contributor `json:"contributors"`
+	SwitchingPlan string        `json:"switching_plan"` // the plan that the switching sheet carries out
 	Switching     []Switch      `json:"switching"`
 	Cautions      []string      `json:"cautions"`
 }
@@ -70,8 +83,8 @@ type Contributor struct {
 	FrequencyHz float64 `json:"frequency_hz"`
 }
 
-// Switch is a line of the switching sheet, for the plan of least power. The
-// last four figures are filled in by hand.
+// Switch is a line of the switching sheet. Confirmed and Restored are filled in
+// by hand, From and To as well where no time was given.
 type Switch struct {
 	Operator    string   `json:"operator"`
 	Contact     string   `json:"contact"`
@@ -96,6 +109,9 @@ var workCautions = []string{
 	"Local rules and the licensed practice of whoever directs the work decide; where they ask for more, they hold.",
 	"No stay is proposed where anything is not assessed.",
 }
+
+// WorkCautions returns the sentences that go with every plan.
+func WorkCautions() []string { return append([]string(nil), workCautions...) }
 
 // workMargin is how far below 1 the optimizer aims, so that the engine's own
 // verdict, which allows for bodyGap, is not "above".
@@ -122,24 +138,36 @@ func (m *Model) Work(ctx context.Context, q WorkQuery) (*Work, error) {
 	if q.Share == 0 {
 		q.Share = 0.05
 	}
-	w := &Work{Class: q.Class, Surface: q.Surface, Cautions: workCautions, StayAskedMin: q.StayS / 60, Reductions: []Reduction{}, Contributors: []Contributor{}, Switching: []Switch{}}
+	if q.Plan == "" {
+		q.Plan = PlanLeastPower
+	}
+	if !contains(Plans(), q.Plan) {
+		return nil, fmt.Errorf("no plan %q; there are %s", q.Plan, listText(Plans()))
+	}
+	if !(q.Elsewhere >= 0) || !(q.Share >= 0) || !(q.StayS >= 0) {
+		return nil, fmt.Errorf("stay %v s, ratio elsewhere %v, share %v: none may be negative", q.StayS, q.Elsewhere, q.Share)
+	}
+	w := &Work{Class: q.Class, Places: []string{}, SwitchingPlan: q.Plan, Surface: q.Surface, Cautions: workCautions, StayAskedMin: q.StayS / 60, Reductions: []Reduction{}, Contributors: []Contributor{}, Switching: []Switch{}}
 	places := append([]Place(nil), q.Places...)
-	for _, p := range places {
-		w.Places = append(w.Places, p.ID)
+	for i := range places {
+		w.Places = append(w.Places, places[i].ID)
+		places[i].Class = q.Class // who works there now
 	}
 	if q.Surface != "" {
 		if m.surface(q.Surface) == nil {
 			return nil, fmt.Errorf("no surface %q in the site", q.Surface)
 		}
-		p, err := m.worstOn(ctx, q.Surface, r)
-		if err != nil {
-			return nil, err
-		}
-		if p != nil {
-			places = append(places, *p)
+		for _, rule := range []*rule{r, r.neverAveraged()} {
+			p, err := m.worstOn(ctx, q.Surface, rule)
+			if err != nil {
+				return nil, err
+			}
+			if p != nil {
+				places = append(places, *p)
+			}
 		}
 	}
-	if len(places) == 0 {
+	if len(places) == 0 && q.Surface == "" {
 		return nil, errors.New("name at least one place or a surface to work at")
 	}
 	points, err := m.Field(ctx, places)
@@ -159,10 +187,22 @@ func (m *Model) Work(ctx context.Context, q WorkQuery) (*Work, error) {
 			w.Reason = c.Reason
 		}
 	}
+	if q.Surface != "" {
+		top, err := m.largestOn(ctx, q.Surface, r)
+		if err != nil {
+			return nil, err
+		}
+		if top.reach != reached {
+			w.Reason = "part of " + q.Surface + " lies in the reactive region of an antenna: measure there"
+			if w.Verdict == Within {
+				w.Verdict = NotAssessed
+			}
+		}
+	}
 	w.Contributors = m.contributors(points, q.Class, q.Share)
 	if len(r.uncovered) > 0 {
 		w.Reason = joinReasons(r.uncovered)
-		w.StayReason = "no stay is proposed: " + w.Reason
+		w.StayReason = "no stay is proposed where anything is not assessed: " + w.Reason
 		zero := 0.0
 		w.StayMin = &zero
 		return w, nil
@@ -176,7 +216,11 @@ func (m *Model) Work(ctx context.Context, q WorkQuery) (*Work, error) {
 		w.Reductions = append(w.Reductions, *plan)
 	}
 	m.stay(w, r, points, &q)
-	w.Switching = m.switching(w.Reductions[0].Transmitters)
+	for _, p := range w.Reductions {
+		if p.Plan == q.Plan {
+			w.Switching = m.switching(p.Transmitters, &q)
+		}
+	}
 	return w, ctx.Err()
 }
 
@@ -190,21 +234,29 @@ func (p *PointResult) class(name string) ClassRatio {
 	return ClassRatio{}
 }
 
-// worstOn is the place of the largest ratio on a surface, with the body that the
-// surface states; nil where nothing radiates.
-func (m *Model) worstOn(ctx context.Context, surface string, r *rule) (*Place, error) {
-	s := m.surface(surface)
+// largestOn finds the largest ratio on a surface.
+func (m *Model) largestOn(ctx context.Context, surface string, r *rule) (summit, error) {
 	regions, err := m.regions(&ZoneQuery{Surfaces: []string{surface}})
 	if err != nil {
-		return nil, err
+		return summit{}, err
 	}
 	g := regions[0]
 	e := m.evaluator(r, nil, g.factor, g.frame, 1)
 	p := newPlane(g.rings, DefaultResolutionM, g.from, g.to, r.anyMean && !g.peak && g.to > g.from)
-	top := e.largestOver(ctx, p)
-	if top.lower == 0 {
+	return e.largestOver(ctx, p, summitEffort), ctx.Err()
+}
+
+// worstOn is the place of the largest ratio on a surface, with the body that the
+// surface states; nil where nothing radiates.
+func (m *Model) worstOn(ctx context.Context, surface string, r *rule) (*Place, error) {
+	if len(r.groups) == 0 {
 		return nil, nil
 	}
+	top, err := m.largestOn(ctx, surface, r)
+	if err != nil || top.lower == 0 {
+		return nil, err
+	}
+	s := m.surface(surface)
 	return &Place{ID: fmt.Sprintf("%s (%.2f, %.2f)", surface, top.at.X, top.at.Y), At: Point{X: top.at.X, Y: top.at.Y, Z: s.Z}, From: s.From, To: s.To, Class: r.class, WallLoss: 1, On: surface}, nil
 }
 
@@ -265,88 +317,15 @@ func (s *Source) transmitter() string {
 	return s.ID
 }
 
-// stay says how long a stay may last by the averaging rule.
-func (m *Model) stay(w *Work, r *rule, points []PointResult, q *WorkQuery) {
-	none := func(why string) {
-		zero := 0.0
-		w.StayMin, w.StayReason = &zero, why
-	}
-	if w.Verdict == NotAssessed || w.Reason != "" {
-		none("no stay is proposed: " + w.Reason)
-		return
-	}
-	if float64(w.ExposureRatio) <= 1 {
-		w.StayAllowed = true
-		w.StayReason = "the exposure ratio is not above 1: the levels supplied set no end to a stay"
-		return
-	}
-	averaging, whole, short := math.Inf(1), true, false
-	for i := range m.sources {
-		s := &m.sources[i]
-		if s.silent() {
-			continue
-		}
-		for _, at := range m.site.Limits.At(r.class, s.src.FrequencyHz) {
-			if at.Group.Effect == limits.Stimulation || at.Group.Kind == limits.Peak {
-				continue
-			}
-			if at.Group.Region == limits.Local {
-				short = true
-			}
-			whole = whole && (at.None || at.TimeAveraging)
-			if at.AverageS > 0 {
-				averaging = math.Min(averaging, at.AverageS)
-			}
-			for _, k := range at.Rows {
-				short = short || m.site.Limits.Rows[k].HasBrief
-			}
-		}
-	}
-	ratio := 0.0
-	for _, p := range points {
-		for i, g := range p.class(r.class).Groups {
-			x := float64(g.ExposureRatio)
-			if (r.groups[i].Effect == limits.Stimulation || r.groups[i].Kind == limits.Peak) && x > 1 {
-				none("no stay: the " + r.groups[i].String() + " levels are exceeded, and they are never averaged")
-				return
-			}
-			ratio = math.Max(ratio, x)
-		}
-	}
-	switch {
-	case !whole:
-		none("no stay: the limit rows of this class do not all say that a stay may be averaged (time averaging = yes)")
-	case !short:
-		none("no stay: the table has no local or brief levels for this class, which a short stay must be held against")
-	case math.IsInf(averaging, 1):
-		none("no stay: the limit rows state no averaging time")
-	case q.Elsewhere >= 1:
-		none("no stay: the ratio elsewhere already takes up the limit")
-	default:
-		t := StayTime(averaging, ratio, q.Elsewhere) / 60
-		w.StayMin, w.StayAllowed = &t, true
-		w.StayReason = fmt.Sprintf("at a ratio of %.3g for the stay and %.3g for the rest of any %.4g min", ratio, q.Elsewhere, averaging/60)
-		if q.StayS > 0 && q.StayS/60 > t {
-			w.StayAllowed = false
-			w.StayReason += fmt.Sprintf("; the %.4g min asked are longer than that", q.StayS/60)
-		}
-	}
-}
-
-// StayTime returns how long, in s, a stay at exposure ratio r may last within
-// the averaging time T (s) when the ratio is r0 for the rest of it: t = T (1 -
-// r0)/(r - r0), for r > 1 and 0 <= r0 < 1. It is exact for constant ratios.
-// Source: [STAY].
-func StayTime(averagingS, r, r0 float64) float64 { return averagingS * (1 - r0) / (r - r0) }
-
 // switching writes the switching sheet for a plan.
-func (m *Model) switching(factors []TransmitterFactor) []Switch {
+func (m *Model) switching(factors []TransmitterFactor, q *WorkQuery) []Switch {
 	out := []Switch{}
 	for _, f := range factors {
 		if f.Factor >= 1 {
 			continue
 		}
-		s := Switch{Transmitter: f.Transmitter, Action: "switch off"}
+		s := Switch{Transmitter: f.Transmitter, Action: "switch off", From: q.From, To: q.To}
+		reduce := math.Ceil(float64(f.ReductionDB)*10-1e-9) / 10 // to the next tenth of a decibel
 		for i := range m.sources {
 			src := m.sources[i].src
 			if src.transmitter() != f.Transmitter {
@@ -356,12 +335,12 @@ func (m *Model) switching(factors []TransmitterFactor) []Switch {
 				s.Operator, s.Reference = src.Operator, src.OperatorReference
 				s.BearingDeg = bearing(src.Pose.AzimuthRad + m.site.About.GridBearingRad)
 				s.HeightM, s.BandMHz = src.Position.Z, src.FrequencyHz/1e6
-				s.TargetW = src.Power.TransmitterW * f.Factor
+				s.TargetW = src.Power.TransmitterW * math.Pow(10, -reduce/10)
 			}
 			s.Antennas = append(s.Antennas, src.ID)
 		}
 		if f.Factor > 0 {
-			s.Action = fmt.Sprintf("reduce by %.1f dB", math.Ceil(float64(f.ReductionDB)*10)/10)
+			s.Action = fmt.Sprintf("reduce by %.1f dB", reduce)
 		}
 		for _, o := range m.site.Operators {
 			if o.Name == s.Operator {
