@@ -6,6 +6,8 @@ import (
 
 	"github.com/stretchr/testify/assert"
 	"github.com/stretchr/testify/require"
+
+	"example.org/standclear/antenna"
 )
 
 // upright is an untilted placement at the origin.
@@ -131,4 +133,25 @@ func TestWireBoundsShrink(t *testing.T) {
 	o := w.over(box{c: q, h: Point{X: 1e-7, Y: 1e-7, Z: 1e-7}})
 	assert.InEpsilon(t, w.at(q).E, o.Hi.E, 1e-3)
 	assert.Less(t, o.Hi.H, 1e-9)
+}
+
+// Every pattern whose gain is exact gives back the watt that went in: S summed over
+// the sphere, 0.1 % asked (the regulatory 2.15 dBi of the dipole is 0.02 % low).
+func TestFarFieldGivesBackThePower(t *testing.T) {
+	type made struct {
+		p antenna.Pattern
+		g antenna.Gain
+	}
+	var all []made
+	add := func(p antenna.Pattern, g antenna.Gain) { all = append(all, made{p, g}) }
+	add(antenna.Isotropic())
+	add(antenna.HalfWaveDipole())
+	add(antenna.ShortDipole())
+	add(antenna.SmallLoop(antenna.AlongBoresight))
+	m, g, err := antenna.Monopole(0.25, 1)
+	require.NoError(t, err)
+	add(m, g)
+	for i, x := range all {
+		assert.InEpsilon(t, 1.0, radiated(newFarField(upright(1), x.p, float64(x.g)), Point{}, 100, 150), 1e-3, "%d", i)
+	}
 }
