@@ -10,7 +10,6 @@ import (
 
 	"example.org/standclear/exposure"
 	"example.org/standclear/exposure/sitefile/demo"
-	"example.org/standclear/exposure/units"
 	"example.org/standclear/reports"
 )
 
@@ -51,7 +50,7 @@ func runAssess(ctx context.Context, std streams, o assessOptions, args []string)
 	if o.out == "" {
 		return usageError{"-o", "", "the folder to write the report to is missing; write -o DIR, such as -o report"}
 	}
-	resolution, err := positive("--resolution", o.resolution, "0.05", units.Length)
+	width, err := resolution(o.resolution)
 	if err != nil {
 		return err
 	}
@@ -59,21 +58,23 @@ func runAssess(ctx context.Context, std streams, o assessOptions, args []string)
 		return err
 	}
 	var site *exposure.Site
+	name := "demo"
 	if o.demo {
 		site, err = o.loadFS(std, demo.FS)
 	} else {
-		site, err = o.load(std, args[0])
+		name = args[0]
+		site, err = o.load(std, name)
 	}
 	if err != nil {
 		return err
 	}
 	tell, end := progress(ctx, std, "assessing", o.quiet)
-	model, err := exposure.New(site, exposure.Options{Progress: tell})
+	model, err := compile(site, name, tell)
 	if err != nil {
 		end()
 		return err
 	}
-	a, err := model.Assess(ctx, exposure.AssessOptions{Program: program, ResolutionM: resolution})
+	a, err := model.Assess(ctx, exposure.AssessOptions{Program: program, ResolutionM: width})
 	end()
 	if err != nil {
 		return err

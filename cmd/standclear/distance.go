@@ -73,7 +73,7 @@ func runDistance(ctx context.Context, std streams, o distanceOptions, path strin
 		return err
 	}
 	tell, end := progress(ctx, std, "distances", o.quiet)
-	model, err := exposure.New(site, exposure.Options{Progress: tell})
+	model, err := compile(site, path, tell)
 	if err != nil {
 		end()
 		return err

@@ -75,7 +75,7 @@ func runField(ctx context.Context, std streams, o fieldOptions, path string) err
 	if len(places) == 0 {
 		return usageError{"field", "", "the site has no places; give a point with --at X,Y,Z or a table with --points FILE"}
 	}
-	model, err := exposure.New(site, exposure.Options{})
+	model, err := compile(site, path, nil)
 	if err != nil {
 		return err
 	}

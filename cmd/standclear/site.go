@@ -111,6 +111,16 @@ func warningLine(w exposure.Warning) string {
 	return strings.Join(append(at, w.Message), ": ")
 }
 
+// compile makes the model of a site. What it refuses is wrong with the site's
+// figures taken together, so the input is at fault.
+func compile(site *exposure.Site, path string, tell func(float64)) (*exposure.Model, error) {
+	model, err := exposure.New(site, exposure.Options{Progress: tell})
+	if err != nil {
+		return nil, sitefile.Faults{{File: path, Message: err.Error()}}
+	}
+	return model, nil
+}
+
 // readError marks what went wrong with reading as the input's fault.
 func readError(path string, err error) error {
 	if errors.As(err, new(sitefile.Faults)) || errors.As(err, new(sitefile.Fault)) {

@@ -12,6 +12,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"example.org/standclear/exposure/sitefile"
+	"example.org/standclear/reports"
 )
 
 // The exit statuses.
@@ -72,7 +73,7 @@ func report(std streams, err error, asJSON, all bool) int {
 		faults = sitefile.Faults{{Column: usage.where, Text: usage.text, Message: usage.message}}
 	case errors.As(err, &input):
 		faults = sitefile.Faults{{File: input.path, Message: strings.TrimPrefix(input.Error(), input.path+": ")}}
-	case errors.Is(err, fs.ErrExist):
+	case errors.Is(err, fs.ErrExist), errors.Is(err, reports.ErrExists):
 		faults = sitefile.Faults{{Message: err.Error()}}
 	default:
 		fmt.Fprintln(std.err, "standclear:", oneLine(err))

@@ -43,7 +43,7 @@ func newZone(std streams) *cobra.Command {
 // query reads the flags that need no site.
 func (o *zoneOptions) query() (q exposure.ZoneQuery, err error) {
 	q.Surfaces, q.Classes = o.surfaces, o.classes
-	if q.ResolutionM, err = positive("--resolution", o.resolution, "0.05", units.Length); err != nil {
+	if q.ResolutionM, err = resolution(o.resolution); err != nil {
 		return q, err
 	}
 	if q.Share, err = positive("--share", o.share, "0.05 or 5%", units.Share); err != nil {
@@ -69,6 +69,15 @@ func (o *zoneOptions) query() (q exposure.ZoneQuery, err error) {
 	return q, nil
 }
 
+// resolution reads --resolution.
+func resolution(text string) (float64, error) {
+	v, err := positive("--resolution", text, "0.05", units.Length)
+	if err == nil && (v < 0.001 || v > 100) {
+		err = usageError{"--resolution", text, "is not between 0.001 and 100 m; write one such as 0.05"}
+	}
+	return v, err
+}
+
 // section reads --section, either form.
 func section(site *exposure.Site, flag, text string) (*exposure.Section, error) {
 	const want = "a section; write X,Y,AZIMUTH such as 12,-4.5,90 or X1,Y1:X2,Y2 such as -5,0:30,12"
@@ -81,8 +90,8 @@ func section(site *exposure.Site, flag, text string) (*exposure.Section, error) 
 		if err != nil {
 			return nil, err
 		}
-		if a[0] == b[0] && a[1] == b[1] {
-			return nil, usageError{flag, text, "starts where it ends; write two different points, such as -5,0:30,12"}
+		if math.Hypot(b[0]-a[0], b[1]-a[1]) <= 0.1 {
+			return nil, usageError{flag, text, "is not longer than 0.1 m; write two points farther apart, such as -5,0:30,12"}
 		}
 		return &exposure.Section{X1M: a[0], Y1M: a[1], X2M: b[0], Y2M: b[1]}, nil
 	}
@@ -117,7 +126,7 @@ func runZone(ctx context.Context, std streams, o zoneOptions, path string) error
 		return usageError{"zone", "", "the site has no surfaces; list them in surfaces.csv, or give a vertical plane with --section X,Y,AZIMUTH"}
 	}
 	tell, end := progress(ctx, std, "boundaries", o.quiet)
-	model, err := exposure.New(site, exposure.Options{Progress: tell})
+	model, err := compile(site, path, tell)
 	if err != nil {
 		end()
 		return err
