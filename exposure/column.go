@@ -107,18 +107,15 @@ func (s *search) column(n *node) (open []slab, done bool) {
 		}
 	}
 	next := sl
-	limit := 0.05 * math.Min(gap, s.e.share) * s.p.step / side / float64(len(sl.active)+1)
+	s.columnWidths()
+	limit := s.negligible(0.1 * math.Min(gap, s.e.share) * s.p.step / side)
 	from := len(s.ints)
 	for i, ti := range sl.active {
-		m := &s.means[i]
-		wide := 0.0
-		for g := 0; g < s.e.ng; g++ {
-			wide = math.Max(wide, m.hi[g]-m.lo[g])
-		}
-		if !(wide <= limit) {
+		if !(s.width[i] <= limit) {
 			s.ints = append(s.ints, ti)
 			continue
 		}
+		m := &s.means[i]
 		for g := 0; g < s.e.ng; g++ {
 			next.flo[g] += m.lo[g]
 			next.fhi[g] += m.hi[g]
@@ -127,6 +124,19 @@ func (s *search) column(n *node) (open []slab, done bool) {
 	next.active = s.ints[from:len(s.ints):len(s.ints)]
 	s.slabs = append(s.slabs, next)
 	return s.slabs[len(s.slabs)-1 : len(s.slabs) : len(s.slabs)], false
+}
+
+// columnWidths puts the gap of each active term's bounds over the column into
+// width.
+func (s *search) columnWidths() {
+	s.width = s.width[:0]
+	for i := range s.means {
+		wide := 0.0
+		for g := 0; g < s.e.ng; g++ {
+			wide = math.Max(wide, s.means[i].hi[g]-s.means[i].lo[g])
+		}
+		s.width = append(s.width, wide)
+	}
 }
 
 // columnReach looks at the column's slabs one by one: a slab that lies in a

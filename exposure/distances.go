@@ -5,6 +5,7 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"reflect"
 	"sync"
 	"sync/atomic"
 
@@ -12,13 +13,13 @@ import (
 )
 
 // The search for an extent brackets the boundary to within extentFine of the
-// distance (or extentFineM) while that is cheap, and after extentCheap boxes is
+// distance (or extentFineM) while that is cheap, and after extentCheap bounds is
 // content with extentCoarse (or extentCoarseM). After extentMost it ends with
 // the bracket it has.
 const (
 	extentFine, extentFineM     = 1e-3, 0.005
 	extentCoarse, extentCoarseM = 5e-3, 0.02
-	extentCheap, extentMost     = 1200, 5000
+	extentCheap, extentMost     = 2000, 12_000
 )
 
 // target is what a distance is measured from: a row, a housing or all.
@@ -59,27 +60,50 @@ func (m *Model) Distances(ctx context.Context, q DistanceQuery) ([]Distance, err
 			jobs = append(jobs, job{&targets[i], r})
 		}
 	}
+	// Targets that are alike but for where they stand and which way they face
+	// have the same extents: the first of them is searched, the others copy it.
+	first := make([]int, len(jobs))
+	var unique []int
+	for i, j := range jobs {
+		first[i] = i
+		for _, k := range unique {
+			if q.Direction == nil && q.Coverage == nil && jobs[k].r == j.r && m.alike(jobs[k].t, j.t) {
+				first[i] = k
+				break
+			}
+		}
+		if first[i] == i {
+			unique = append(unique, i)
+		}
+	}
 	results := make([][]Distance, len(jobs))
 	errs := make([]error, len(jobs))
 	var next, done atomic.Int64
 	var group sync.WaitGroup
-	for w := 0; w < min(m.options.Workers, len(jobs)); w++ {
+	for w := 0; w < min(m.options.Workers, len(unique)); w++ {
 		group.Add(1)
 		go func() {
 			defer group.Done()
 			for {
-				i := int(next.Add(1)) - 1
-				if i >= len(jobs) || ctx.Err() != nil {
+				// From the last to the first: everything together takes longest.
+				i := len(unique) - int(next.Add(1))
+				if i < 0 || ctx.Err() != nil {
 					return
 				}
-				results[i], errs[i] = m.distances(ctx, jobs[i].t, jobs[i].r, q.Direction, q.Coverage)
+				k := unique[i]
+				results[k], errs[k] = m.distances(ctx, jobs[k].t, jobs[k].r, q.Direction, q.Coverage)
 				if n := done.Add(1); m.options.Progress != nil {
-					m.options.Progress(float64(n) / float64(len(jobs)))
+					m.options.Progress(float64(n) / float64(len(unique)))
 				}
 			}
 		}()
 	}
 	group.Wait()
+	for i := range jobs {
+		if k := first[i]; k != i && errs[k] == nil && ctx.Err() == nil {
+			results[i] = m.copied(results[k], jobs[i].t, jobs[i].r)
+		}
+	}
 	var out []Distance
 	for i := range results {
 		if errs[i] != nil {
@@ -172,6 +196,61 @@ func (m *Model) compass() [6]axis {
 	}
 }
 
+// alike reports whether two targets have the same extents: the same rows but for
+// their names, places and bearings, arranged the same way in frames that are
+// turned the same way. Ground rays tie a source to its place.
+func (m *Model) alike(a, b *target) bool {
+	if a.all || b.all || len(a.members) != len(b.members) || len(a.members) > 32 || m.site.Ground.Method == GroundFresnel {
+		return false
+	}
+	fa, fb := a.frame(), b.frame()
+	for i := range a.members {
+		x, y := &m.sources[a.members[i]], &m.sources[b.members[i]]
+		s, t := *x.src, *y.src
+		if s.Signal != "" || t.Signal != "" || a.axes[0].name != b.axes[0].name {
+			return false
+		}
+		const near = 1e-9
+		if fa.point(s.Position).Sub(fb.point(t.Position)).Norm() > near {
+			return false
+		}
+		p, q := s.Pose.Axes(), t.Pose.Axes()
+		if fa.vector(p.Boresight).Sub(fb.vector(q.Boresight)).Norm() > near || fa.vector(p.Up).Sub(fb.vector(q.Up)).Norm() > near {
+			return false
+		}
+		s.ID, s.Operator, s.OperatorReference, s.Service, s.Housing, s.Transmitter = t.ID, t.Operator, t.OperatorReference, t.Service, t.Housing, t.Transmitter
+		s.State, s.DataFrom, s.DataDate, s.Row, s.Position, s.Pose, s.Uncertainty = t.State, t.DataFrom, t.DataDate, t.Row, t.Position, t.Pose, t.Uncertainty
+		if !reflect.DeepEqual(s, t) {
+			return false
+		}
+	}
+	return true
+}
+
+// frame is the target's centre with its first, right-hand and up directions.
+func (t *target) frame() frame {
+	return frame{t.centre, t.axes[0].dir, t.axes[3].dir, t.axes[4].dir}
+}
+
+// copied gives a target the distances of one that is alike.
+func (m *Model) copied(from []Distance, t *target, r *rule) []Distance {
+	out := append([]Distance(nil), from...)
+	for i := range out {
+		d := &out[i]
+		d.Antenna, d.Housing, d.Reason = t.antenna, t.housing, m.unsure(r, t.members)
+		d.AzimuthDeg, d.ElevationDeg = m.bearings(t.axes[i].dir)
+	}
+	return out
+}
+
+// bearings returns the true azimuth and the elevation of a direction in deg.
+func (m *Model) bearings(dir Point) (azimuth, elevation float64) {
+	if math.Hypot(dir.X, dir.Y) > 1e-9 {
+		azimuth = bearing(math.Atan2(dir.X, dir.Y) + m.site.About.GridBearingRad)
+	}
+	return azimuth, degrees(math.Asin(math.Max(-1, math.Min(1, dir.Z))))
+}
+
 // distances answers one target and class.
 func (m *Model) distances(ctx context.Context, t *target, r *rule, ray *RayDirection, coverage *Coverage) ([]Distance, error) {
 	member := map[int]bool{}
@@ -194,12 +273,9 @@ func (m *Model) distances(ctx context.Context, t *target, r *rule, ray *RayDirec
 		a := &axes[i]
 		d := Distance{
 			Antenna: t.antenna, Housing: t.housing, All: t.all, Alone: !t.all, Class: r.class, Kind: kind, Direction: a.name,
-			ElevationDeg: degrees(math.Asin(math.Max(-1, math.Min(1, a.dir.Z)))),
-			Verdict:      Above, Reason: reason,
+			Verdict: Above, Reason: reason,
 		}
-		if math.Hypot(a.dir.X, a.dir.Y) > 1e-9 {
-			d.AzimuthDeg = bearing(math.Atan2(a.dir.X, a.dir.Y) + m.site.About.GridBearingRad)
-		}
+		d.AzimuthDeg, d.ElevationDeg = m.bearings(a.dir)
 		if ray != nil {
 			d.Direction = fmt.Sprintf("azimuth %.4g deg, elevation %.4g deg", d.AzimuthDeg, d.ElevationDeg)
 		}
@@ -214,6 +290,7 @@ func (m *Model) distances(ctx context.Context, t *target, r *rule, ray *RayDirec
 			b = e.outermost(ctx, radius)
 		} else {
 			b = e.reachAlong(ctx, radius)
+			e.aim(ctx, &b, f, m, t.members, radius)
 		}
 		d.DistanceM, d.BracketM = b.outer, b.outer-b.inner
 		if b.none {
@@ -223,6 +300,13 @@ func (m *Model) distances(ctx context.Context, t *target, r *rule, ray *RayDirec
 			d.Verdict = NotAssessed
 		}
 		d.GovernedBy = e.governs(Point{X: math.Max(b.outer, 1e-3)})
+		if !b.none {
+			tip := b.at
+			if ray != nil {
+				tip = Point{X: b.outer}
+			}
+			d.end = &farEnd{centre: t.centre, dir: a.dir, tip: tip, members: t.members, housed: t.antenna != "" && m.sources[t.members[0]].src.Housing != ""}
+		}
 		if coverage != nil && !b.none {
 			if err := m.cover(ctx, &d, e, f, b, coverage); err != nil {
 				return nil, err
@@ -369,10 +453,12 @@ func (e *evaluator) outermost(ctx context.Context, radius float64) bracket {
 	return bracket{none: true}
 }
 
-// farBox is a box of the search for an extent, by its farthest coordinate.
+// farBox is a box of the search for an extent, by its farthest coordinate, with
+// the terms that are still worth bounding in it.
 type farBox struct {
-	b   box
-	far float64
+	b    box
+	far  float64
+	open *slab
 }
 
 type farHeap []farBox
@@ -399,21 +485,23 @@ func (h *farHeap) Pop() any {
 // farthest box that could not be dropped. A boundary that lies behind the centre
 // as a whole has both ends at zero.
 func (e *evaluator) reachAlong(ctx context.Context, radius float64) bracket {
-	inner, outer, found := 0.0, 0.0, false
-	some := false // a boundary exists, ahead of the centre or behind it
-	var tip Point
-	h := farHeap{{box{h: Point{X: radius, Y: radius, Z: radius}}, radius}}
-	for boxes := 0; len(h) > 0 && ctx.Err() == nil; boxes++ {
+	inner, tip, some := e.feel(radius) // some: a boundary exists, ahead of the centre or behind it
+	outer, found := 0.0, inner > 0
+	scratch := search{e: e}
+	everything := e.everything(&plane{})
+	h := farHeap{{box{h: Point{X: radius, Y: radius, Z: radius}}, radius, &everything}}
+	for effort := 0; len(h) > 0 && ctx.Err() == nil; {
 		top := heap.Pop(&h).(farBox)
 		gap := math.Max(extentFine*top.far, extentFineM)
-		if boxes > extentCheap {
+		if effort > extentCheap {
 			gap = math.Max(extentCoarse*top.far, extentCoarseM)
 		}
-		if found && top.far <= inner+gap || boxes > extentMost || some && top.far <= 0 {
+		if found && top.far <= inner+gap || effort > extentMost || some && top.far <= 0 {
 			outer, some = math.Max(outer, top.far), true
 			break
 		}
-		v, reactive := e.decide(top.b)
+		effort += 1 + len(top.open.active)
+		v, reactive := scratch.decide(top.b, &top.open)
 		if v < 0 {
 			continue
 		}
@@ -426,22 +514,179 @@ func (e *evaluator) reachAlong(ctx context.Context, radius float64) bracket {
 			// It stays open, so it counts; go on to find out how near a point
 			// above the share lies.
 			outer, some = math.Max(outer, top.far), true
-			continue
-		}
-		if _, at := e.at(top.b.c); at > e.share {
-			some = true
-			if top.b.c.X > inner {
+			if _, at := e.at(top.b.c); at > e.share && top.b.c.X > inner {
 				inner, found, tip = top.b.c.X, true, top.b.c
 			}
+			continue
+		}
+		if !some {
+			_, at := e.at(top.b.c)
+			some = at > e.share
 		}
 		for _, b := range halves(top.b) {
-			heap.Push(&h, farBox{b, b.c.X + b.h.X})
+			heap.Push(&h, farBox{b, b.c.X + b.h.X, top.open})
 		}
 	}
 	if !some {
 		return bracket{none: true}
 	}
 	return bracket{inner: inner, outer: math.Max(outer, inner) + boxSlack, at: tip}
+}
+
+// decide is evaluator.decide on the terms that are still open; it freezes those
+// whose gap together moves the boundary by less than half a percent.
+func (s *search) decide(b box, list **slab) (verdict int, reactive bool) {
+	b = grown(b)
+	open := *list
+	switch s.reaching(b, list) {
+	case unreached:
+		return 0, true
+	case partReach:
+		return 0, false
+	}
+	lo, hi := s.bound(b, open)
+	switch {
+	case hi <= s.e.share:
+		return -1, false
+	case lo > s.e.share:
+		return 1, false
+	}
+	limit := s.negligible(0.002 * s.e.share)
+	if limit < 0 {
+		return 0, false
+	}
+	count := 0
+	for _, w := range s.width {
+		if w <= limit {
+			count++
+		}
+	}
+	next := **list
+	next.active = make([]int32, 0, len(open.active)-count)
+	var l, h groupRatios
+	for k, i := range open.active {
+		if !(s.width[k] <= limit) {
+			next.active = append(next.active, i)
+			continue
+		}
+		s.e.terms[i].over(b, s.e.rule, &l, &h)
+		for g := 0; g < s.e.ng; g++ {
+			next.flo[g] += l[g]
+			next.fhi[g] += h[g]
+		}
+	}
+	*list = &next
+	return 0, false
+}
+
+// reaching narrows the list of reactive regions as reaches does, on a copy where
+// it changes.
+func (s *search) reaching(b box, list **slab) reach {
+	open := *list
+	worst := reached
+	var near []int32
+	for _, i := range open.near {
+		switch s.e.reach[i].reaches(b) {
+		case unreached:
+			return unreached
+		case partReach:
+			worst = partReach
+			near = append(near, i)
+		}
+	}
+	if len(near) < len(open.near) {
+		next := *open
+		next.near = near
+		*list = &next
+	}
+	return worst
+}
+
+// feel walks from each source outward along rays spread over the half space
+// ahead and returns the point above the share that reaches farthest along x: a
+// start for the search, and the inner end of its bracket. some says that a point
+// above the share was met, ahead or behind.
+func (e *evaluator) feel(radius float64) (best float64, tip Point, some bool) {
+	const rays, steps = 24, 14
+	budget := 1200 / max(1, len(e.terms)) // points looked at, so that a big site costs no more
+	try := func(p Point) bool {
+		if _, v := e.at(p); v <= e.share || e.reaches(box{c: p}) != reached {
+			return false
+		}
+		some = true
+		if p.X > best {
+			best, tip = p.X, p
+		}
+		return true
+	}
+	for i := range e.terms {
+		for _, em := range e.terms[i].em {
+			w := em.(placed).where()
+			for k := 0; k < rays && budget > 0; k++ {
+				// The spiral of equal areas over the half space, axis first.
+				cos := 1 - float64(k)/rays
+				sin := math.Sqrt(1 - cos*cos)
+				s, c := math.Sincos(2.399963229728653 * float64(k)) // golden angle
+				dir := Point{X: cos, Y: sin * c, Z: sin * s}
+				if k%2 == 1 {
+					// Every other ray leans to where the source points.
+					dir = dir.Add(w.axes.Boresight.Scale(2))
+					dir = dir.Scale(1 / dir.Norm())
+				}
+				lo, hi := 0.0, radius
+				for step := 0; step < steps && budget > 0; step++ {
+					mid := (lo + hi) / 2
+					budget--
+					if try(w.pos.Add(dir.Scale(mid))) {
+						lo = mid
+					} else {
+						hi = mid
+					}
+				}
+			}
+		}
+	}
+	if best == 0 {
+		return best, tip, some
+	}
+	// Climb from there: sideways, and farther out, in ever smaller steps.
+	for step := 0.3 * best; step > 0.002*best; step /= 1.6 {
+		from := tip
+		for k := 0; k < 9; k++ {
+			s, c := math.Sincos(math.Pi / 4 * float64(k))
+			side := Point{Y: step * c, Z: step * s}
+			if k == 8 {
+				side = Point{}
+			}
+			p := from.Add(side)
+			p.X = tip.X + 0.25*step
+			for n := 0; n < 4 && try(p); n++ {
+				p.X += 0.25 * step
+			}
+		}
+	}
+	return best, tip, some
+}
+
+// aim looks for a point of the boundary where the search for an extent ended
+// without one: on the lines through each member's centre along the direction.
+func (e *evaluator) aim(ctx context.Context, b *bracket, f frame, m *Model, members []int, radius float64) {
+	if b.none || b.at != (Point{}) {
+		return
+	}
+	for _, i := range members {
+		p := f.point(m.sources[i].src.Position)
+		line := frame{f.back(Point{Y: p.Y, Z: p.Z}), f.x, f.y, f.z}
+		along := m.evaluator(e.rule, func(j int) bool { return contains(members, j) }, m.groundFactor(0), line, e.share)
+		c := along.outermost(ctx, radius)
+		if c.none {
+			continue
+		}
+		at := Point{X: c.inner * (1 - 1e-6), Y: p.Y, Z: p.Z}
+		if _, v := e.at(at); v > e.share && at.X > b.inner && at.X <= b.outer {
+			b.inner, b.at = at.X, at
+		}
+	}
 }
 
 // halves splits a box across its longest side.

@@ -8,7 +8,7 @@ import (
 )
 
 // gridSamples is the number of samples of a ratio grid along its longer side.
-const gridSamples = 90
+const gridSamples = 64
 
 // Grids samples the exposure ratio for the contour lines of each zone given. A
 // grid is a picture: no boundary and no verdict rests on it.

@@ -3,6 +3,7 @@ package exposure
 import (
 	"context"
 	"math"
+	"slices"
 	"sync"
 	"sync/atomic"
 )
@@ -72,6 +73,7 @@ type search struct {
 	work   []slab
 	means  []termMean
 	width  []float64
+	sorted []float64
 	emit   func(n *node) // when set, undecided nodes of level stop go here instead of being split
 	stop   uint8
 	lo, hi groupRatios
@@ -256,12 +258,15 @@ func (s *search) bound(b box, sl *slab) (lo, hi float64) {
 	return lo * (1 - sumSlack), hi * (1 + sumSlack)
 }
 
-// freeze moves the terms whose gap can no longer matter from the active list
-// into the frozen sums. A term is frozen when its gap is a small part of the
-// gap that the whole sum will have at the finest cell.
+// freeze moves the terms whose gaps can no longer matter from the active list
+// into the frozen sums: together they are a small part of the gap that the whole
+// sum will have at the finest cell.
 func (s *search) freeze(b box, sl *slab, side, gap float64) slab {
 	out := *sl
-	limit := 0.05 * math.Min(gap, s.e.share) * s.p.step / side / float64(len(sl.active)+1)
+	limit := s.negligible(0.1 * math.Min(gap, s.e.share) * s.p.step / side)
+	if limit < 0 {
+		return out
+	}
 	from := len(s.ints)
 	var l, h groupRatios
 	for k, i := range sl.active {
@@ -277,6 +282,21 @@ func (s *search) freeze(b box, sl *slab, side, gap float64) slab {
 	}
 	out.active = s.ints[from:len(s.ints):len(s.ints)]
 	return out
+}
+
+// negligible returns the largest width such that all terms no wider than it
+// have gaps of at most budget together, or -1 where there is none.
+func (s *search) negligible(budget float64) float64 {
+	s.sorted = append(s.sorted[:0], s.width...)
+	slices.Sort(s.sorted)
+	limit, sum := -1.0, 0.0
+	for _, w := range s.sorted {
+		if sum += w; !(sum <= budget) {
+			break
+		}
+		limit = w
+	}
+	return limit
 }
 
 // reaches narrows the slab's list of reactive regions.

@@ -37,11 +37,12 @@ func (h *peakHeap) Pop() any {
 
 // The search for the largest ratio ends at this relative gap, or after this many
 // bounds of single terms with the gap it has: fewer where the verdict does not
-// hang on it.
+// hang on it, and fewer still on a section, which is laid through antennas.
 const (
 	summitGap     = 2e-2
-	summitEffort  = 400_000
-	summitDecided = 80_000
+	summitEffort  = 200_000
+	summitDecided = 40_000
+	summitSection = 5_000
 )
 
 // largestOver finds the largest ratio over the body volume of a plane, best
@@ -183,18 +184,18 @@ func (s *search) body(b box, open *slab, best float64) (lo, hi float64, terms in
 	}
 	if count > 1 {
 		lo, hi, _ = s.columnBounds(b, open, count)
+		s.columnWidths()
 	} else {
 		// Bounds over the whole box enclose means over it as well.
 		lo, hi = s.bound(b, open)
 	}
 	terms = count * len(open.active)
-	limit := 0.05 * summitGap * best / float64(len(s.e.terms)+1)
+	limit := s.negligible(0.2 * summitGap * best)
 	next := *open
 	next.active = nil
 	var l, h groupRatios
 	for k, i := range open.active {
-		gap := s.gap(k, count)
-		if !(gap <= limit) {
+		if !(s.width[k] <= limit) {
 			next.active = append(next.active, i)
 			continue
 		}
@@ -210,18 +211,6 @@ func (s *search) body(b box, open *slab, best float64) (lo, hi float64, terms in
 	}
 	*open = next
 	return lo, hi, terms
-}
-
-// gap is the width of the k-th active term's last bounds.
-func (s *search) gap(k, count int) float64 {
-	if count == 1 {
-		return s.width[k]
-	}
-	wide := 0.0
-	for g := 0; g < s.e.ng; g++ {
-		wide = math.Max(wide, s.means[k].hi[g]-s.means[k].lo[g])
-	}
-	return wide
 }
 
 // split halves a box along its longest sides; a column that is compared by its

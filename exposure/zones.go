@@ -128,7 +128,7 @@ func (m *Model) surface(id string) *Surface {
 	return nil
 }
 
-func contains(list []string, s string) bool {
+func contains[T comparable](list []T, s T) bool {
 	for _, x := range list {
 		if x == s {
 			return true
@@ -192,6 +192,9 @@ func (m *Model) zone(ctx context.Context, g region, r *rule, q *ZoneQuery) (Zone
 	effort := summitEffort
 	if z.InnerAreaM2 > 0 {
 		effort = summitDecided
+	}
+	if g.section != nil {
+		effort = summitSection
 	}
 	top := e.largestOver(ctx, p, effort)
 	z.MaxRatioLower, z.MaxRatioUpper = Number(top.lower), Number(top.upper)
