@@ -22,6 +22,7 @@ import (
 // each site instead.
 const (
 	madeSites     = 40
+	nearSites     = 12
 	pointsPerSite = 2500
 )
 
@@ -173,61 +174,75 @@ func (s *madeSite) draw(f *Surface, z *Zone) (x, y float64) {
 
 func TestNothingAboveOutsideNothingBelowInside(t *testing.T) {
 	n := points(t)
-	above, inside := 0, 0
+	var all tally
 	for seed := uint64(1); seed <= madeSites; seed++ {
-		s := newMadeSite(seed)
-		m := s.model(t, 2)
-		f, z := &s.site.Surfaces[0], s.lines(t, m)
-		p := s.probe(m, f)
-		outer, inner := newBands(z.Outer), newBands(z.Inner)
-		share := s.query.Share
-		faults := 0
-		for k := 0; k < n && faults < 3; k++ {
-			x, y := s.draw(f, z)
-			ratio, height := p.dense(x, y, 17)
-			within := z.Outer.Contains
-			isOuter := outer.contains(x, y) || within(x, y)
-			isInner := inner.contains(x, y)
-			// A mean over the body is known to 1e-7, the accuracy of its quadrature;
-			// values at a height are held to the last bit.
-			slack := 0.0
-			if p.mean {
-				slack = 1e-6
+		all.look(t, newMadeSite(seed), n)
+	}
+	t.Logf("%d sites, %d points each: %d above the share, %d inside the inner line", madeSites, n, all.above, all.inside)
+	assert.Greater(t, all.above, n*madeSites/20, "too few points above to mean anything")
+	assert.Greater(t, all.inside, n*madeSites/20, "too few points inside to mean anything")
+}
+
+// The same with the near-field methods among the sources.
+func TestNothingAboveOutsideNearField(t *testing.T) {
+	n := points(t) / 5
+	var all tally
+	for seed := uint64(nearSeeds); seed < nearSeeds+nearSites; seed++ {
+		all.look(t, newMadeSite(seed), n)
+	}
+	t.Logf("%d sites, %d points each: %d above the share, %d inside the inner line", nearSites, n, all.above, all.inside)
+	assert.Greater(t, all.above, n*nearSites/20, "too few points above to mean anything")
+	assert.Greater(t, all.inside, n*nearSites/20, "too few points inside to mean anything")
+}
+
+// tally counts the points that meant something.
+type tally struct{ above, inside int }
+
+// look holds the lines of a site against n points.
+func (c *tally) look(t *testing.T, s *madeSite, n int) {
+	m := s.model(t, 2)
+	f, z := &s.site.Surfaces[0], s.lines(t, m)
+	p := s.probe(m, f)
+	outer, inner := newBands(z.Outer), newBands(z.Inner)
+	share := s.query.Share
+	// A mean over the body is known to 1e-7, the accuracy of its quadrature;
+	// values at a height are held to the last bit.
+	slack := 0.0
+	if p.mean {
+		slack = 1e-6
+	}
+	faults := 0
+	for k := 0; k < n && faults < 3; k++ {
+		x, y := s.draw(f, z)
+		ratio, height := p.dense(x, y, 17)
+		isOuter := outer.contains(x, y) || z.Outer.Contains(x, y)
+		ok := true
+		if ratio > share*(1+slack) {
+			c.above++
+			ok = assert.True(t, isOuter, "%v: ratio %v at (%v, %v, %v) exceeds %v outside the outer line", s, ratio, x, y, height, share)
+		}
+		if !isOuter {
+			ok = assert.True(t, p.covered(x, y, 17), "%v: (%v, %v) is in a reactive region, yet outside the outer line", s, x, y) && ok
+		}
+		if inner.contains(x, y) {
+			c.inside++
+			if ratio <= share {
+				ratio = p.summit(x, y) // stops a nanometre from the top
 			}
-			if ratio > share*(1+slack) {
-				above++
-				if !assert.True(t, isOuter, "%v: ratio %v at (%v, %v, %v) exceeds %v outside the outer line", s, ratio, x, y, height, share) {
-					faults++
-				}
-			}
-			if !isOuter && !assert.True(t, p.covered(x, y, 17), "%v: (%v, %v) is in a reactive region, yet outside the outer line", s, x, y) {
-				faults++
-			}
-			if isInner {
-				inside++
-				// The climb in height stops a nanometre from the top.
-				if ratio <= share {
-					ratio = p.summit(x, y)
-				}
-				if !assert.Greater(t, ratio, share*(1-1e-6), "%v: (%v, %v) is below, yet inside the inner line", s, x, y) {
-					faults++
-				}
-				if !assert.True(t, isOuter, "%v: (%v, %v) is inside the inner line, yet outside the outer one", s, x, y) {
-					faults++
-				}
-			}
+			ok = assert.Greater(t, ratio, share*(1-1e-6), "%v: (%v, %v) is below, yet inside the inner line", s, x, y) && ok
+			ok = assert.True(t, isOuter, "%v: (%v, %v) is inside the inner line, yet outside the outer one", s, x, y) && ok
+		}
+		if !ok {
+			faults++
 		}
 	}
-	t.Logf("%d sites, %d points each: %d above the share, %d inside the inner line", madeSites, n, above, inside)
-	assert.Greater(t, above, n*madeSites/20, "too few points above to mean anything")
-	assert.Greater(t, inside, n*madeSites/20, "too few points inside to mean anything")
 }
 
 // What the rings of a zone must be: closed, turned the right way, simple, apart,
 // holes inside; and on the surface.
 func TestZonePolygonsAreValid(t *testing.T) {
 	corners := 0
-	for seed := uint64(1); seed <= 2*madeSites; seed++ {
+	for seed := uint64(1); seed <= madeSites+15; seed++ {
 		s := newMadeSite(seed)
 		if seed > madeSites {
 			s.query.ResolutionM = 0.07 // other steps meet the outline elsewhere

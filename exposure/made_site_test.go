@@ -42,12 +42,18 @@ var madeOutlines = [][]Ring{
 	{{{0, 0}, {10, 0.37}, {9.2, 8.1}, {1.3, 9.4}, {0, 0}}, {{2, 2}, {4, 4.1}, {4.6, 2.2}, {2, 2}}, {{6, 3}, {5.5, 6.5}, {8, 5}, {6, 3}}},
 }
 
+// nearSeeds is where the seeds begin whose sites use the near-field methods too.
+const nearSeeds = 1000
+
 // newMadeSite draws a site of one to eight antennas in, beside and above the
 // body volume of one surface.
 func newMadeSite(seed uint64) *madeSite {
 	s := &madeSite{seed: seed, site: &Site{}, r: rand.New(rand.NewPCG(seed, 7))}
 	scale := s.between(0.8, 2.2)
 	east, north := s.between(-40, 40), s.between(-40, 40)
+	if s.chance(0.2) {
+		east, north = east+9500, north-9500 // the far end of what boxSlack covers
+	}
 	f := Surface{ID: "roof", Z: s.between(-3, 12), Class: "anyone", From: 1.5, To: 1.5, Averaging: AverageAsLimit}
 	for _, ring := range madeOutlines[s.r.IntN(len(madeOutlines))] {
 		var moved Ring
@@ -125,6 +131,11 @@ func (s *madeSite) source(i int, at Point) Source {
 		Pose:        antenna.Pose{AzimuthRad: s.between(0, 2*math.Pi), TiltRad: s.between(-10, 30) * rad},
 		FrequencyHz: []float64{450e6, 900e6, 1800e6, 3500e6, 26e9}[s.r.IntN(5)],
 	}
+	if k := len(s.site.Sources); k > 0 && s.chance(0.4) {
+		first := &s.site.Sources[s.r.IntN(k)]
+		first.Signal = "signal of " + first.ID
+		src.Signal, src.FrequencyHz = first.Signal, first.FrequencyHz
+	}
 	if s.chance(0.3) {
 		src.Pose.RollRad = s.between(-180, 180) * rad
 	}
@@ -135,17 +146,37 @@ func (s *madeSite) source(i int, at Point) Source {
 	if s.chance(0.3) {
 		src.LengthM, src.WidthM = s.between(0.2, 2), s.between(0.05, 0.4)
 	}
+	if s.seed >= nearSeeds && src.SweepRad == 0 {
+		s.nearField(&src)
+	}
 	reach := s.between(0.5, 7)
 	src.Power = Power{TransmitterW: 4 * math.Pi * reach * reach * 8 / float64(src.Gain), Loss: s.between(0.3, 1), Carriers: 1, Duty: s.between(0.3, 1), ReductionFactor: 1, PeakFactor: s.between(1, 8)}
 	if k := s.r.IntN(10); k == 0 {
 		src.Power.Duty = 0 // on air, but nothing of it counts against mean levels
 	}
-	if k := len(s.site.Sources); k > 0 && s.chance(0.4) {
-		first := &s.site.Sources[s.r.IntN(k)]
-		first.Signal = "signal of " + first.ID
-		src.Signal, src.FrequencyHz = first.Signal, first.FrequencyHz
-	}
 	return src
+}
+
+// nearField gives a source what its near-field methods need, and one of them. The
+// bodies are kept short, so that arrays have few elements.
+func (s *madeSite) nearField(src *Source) {
+	lambda := Wavelength(src.FrequencyHz)
+	src.Method = MethodAuto
+	src.LengthM, src.WidthM = 0, 0
+	switch src.PatternKind {
+	case PatternDipole:
+		if s.chance(0.5) {
+			src.Polarization = antenna.Horizontal
+		}
+	case PatternShort:
+		src.PatternKind = []PatternKind{PatternShort, PatternLoop}[s.r.IntN(2)]
+	case PatternDish:
+		src.DiameterM = 14 * lambda
+	case PatternOmni, PatternSector, PatternBeamwidth, PatternFile:
+		src.LengthM, src.FrontToBackDB = s.between(1, 6)*lambda, 25
+		src.Polarization = []antenna.Polarization{antenna.Vertical, antenna.Horizontal, antenna.Slant}[s.r.IntN(3)]
+		src.Method = []Method{MethodAuto, MethodAuto, MethodCylindrical, MethodArray}[s.r.IntN(4)]
+	}
 }
 
 // pattern draws one of the built-in patterns.
