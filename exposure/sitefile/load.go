@@ -422,6 +422,7 @@ func (l *loader) site() (*exposure.Site, error) {
 	if l.fatal != nil {
 		return nil, l.fatal
 	}
+	raw := l.untouched()
 	l.bindAll()
 	for _, t := range schema {
 		if t.Required && l.tables[t.Name] == nil && !l.brokenFile(t.Name) {
@@ -442,6 +443,7 @@ func (l *loader) site() (*exposure.Site, error) {
 	s.Places = l.places()
 	s.Sources = l.antennas()
 	l.surveyTables(s)
+	s.Scenarios = l.scenarios(raw)
 	if err := l.failed(); err != nil {
 		return nil, err
 	}
