@@ -1,11 +1,13 @@
 package exposure
 
 import (
+	"cmp"
 	"container/heap"
 	"context"
 	"fmt"
 	"math"
 	"reflect"
+	"slices"
 	"sync"
 	"sync/atomic"
 
@@ -619,29 +621,29 @@ func (e *evaluator) feel(radius float64) (best float64, tip Point, some bool) {
 		}
 		return true
 	}
-	for i := range e.terms {
-		for _, em := range e.terms[i].em {
-			w := em.(placed).where()
-			for k := 0; k < rays && budget > 0; k++ {
-				// The spiral of equal areas over the half space, axis first.
-				cos := 1 - float64(k)/rays
-				sin := math.Sqrt(1 - cos*cos)
-				s, c := math.Sincos(2.399963229728653 * float64(k)) // golden angle
-				dir := Point{X: cos, Y: sin * c, Z: sin * s}
-				if k%2 == 1 {
-					// Every other ray leans to where the source points.
-					dir = dir.Add(w.axes.Boresight.Scale(2))
-					dir = dir.Scale(1 / dir.Norm())
-				}
-				lo, hi := 0.0, radius
-				for step := 0; step < steps && budget > 0; step++ {
-					mid := (lo + hi) / 2
-					budget--
-					if try(w.pos.Add(dir.Scale(mid))) {
-						lo = mid
-					} else {
-						hi = mid
-					}
+	// Every source's first ray before any source's second, those that could
+	// reach farthest first.
+	order := e.byReach()
+	for k := 0; k < rays; k++ {
+		// The spiral of equal areas over the half space, axis first.
+		cos := 1 - float64(k)/rays
+		sin := math.Sqrt(1 - cos*cos)
+		s, c := math.Sincos(2.399963229728653 * float64(k)) // golden angle
+		for _, w := range order {
+			dir := Point{X: cos, Y: sin * c, Z: sin * s}
+			if k%2 == 1 {
+				// Every other ray leans to where the source points.
+				dir = dir.Add(w.axes.Boresight.Scale(2))
+				dir = dir.Scale(1 / dir.Norm())
+			}
+			lo, hi := 0.0, radius
+			for step := 0; step < steps && budget > 0; step++ {
+				mid := (lo + hi) / 2
+				budget--
+				if try(w.pos.Add(dir.Scale(mid))) {
+					lo = mid
+				} else {
+					hi = mid
 				}
 			}
 		}
@@ -666,6 +668,35 @@ func (e *evaluator) feel(radius float64) (best float64, tip Point, some bool) {
 		}
 	}
 	return best, tip, some
+}
+
+// byReach lists where the sources stand, by how far along the frame's x axis each
+// could carry the boundary alone, whatever its pattern.
+func (e *evaluator) byReach() []*placement {
+	type source struct {
+		w   *placement
+		far float64
+	}
+	var list []source
+	for i := range e.terms {
+		t := &e.terms[i]
+		for j, em := range t.em {
+			g, _ := em.falloff()
+			most := 0.0
+			for k := range t.w {
+				s := t.pw[j][e.rule.power[k]] * g / (4 * math.Pi)
+				most = math.Max(most, t.w[k].ratio(density{s, s}))
+			}
+			w := em.(placed).where()
+			list = append(list, source{w, w.pos.X + math.Sqrt(most/e.share)})
+		}
+	}
+	slices.SortStableFunc(list, func(a, b source) int { return cmp.Compare(b.far, a.far) })
+	out := make([]*placement, len(list))
+	for i := range list {
+		out[i] = list[i].w
+	}
+	return out
 }
 
 // aim looks for a point of the boundary where the search for an extent ended
