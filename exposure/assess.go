@@ -16,13 +16,13 @@ func (m *Model) Assess(ctx context.Context, o AssessOptions) (*Assessment, error
 		Program: o.Program, Site: m.site, SiteName: m.site.About.Name, Ground: m.groundText(),
 		StateOn: m.site.OnlyOn, Classes: m.Classes(), Sources: m.Sources(),
 		Warnings: append([]Warning{}, m.site.Inputs.Warnings...), Notices: m.Notices(),
-		Inputs: m.site.Inputs.Files,
+		Inputs: m.site.Inputs.Files, Coverage: o.Coverage,
 	}
 	var err error
 	if a.Points, err = m.Field(ctx, m.site.Places); err != nil {
 		return nil, err
 	}
-	if a.Distances, err = m.Distances(ctx, DistanceQuery{}); err != nil {
+	if a.Distances, err = m.Distances(ctx, DistanceQuery{Coverage: o.Coverage}); err != nil {
 		return nil, err
 	}
 	if a.Zones, err = m.Zones(ctx, ZoneQuery{ResolutionM: o.ResolutionM}); err != nil {
@@ -31,10 +31,16 @@ func (m *Model) Assess(ctx context.Context, o AssessOptions) (*Assessment, error
 	if a.Sections, err = m.housingSections(ctx, a.Distances, o.ResolutionM); err != nil {
 		return nil, err
 	}
+	if a.BoundaryPoints, err = m.BoundaryPoints(ctx, a.Zones, a.Sections); err != nil {
+		return nil, err
+	}
 	if a.Grids, err = m.Grids(ctx, a.Zones, a.Sections); err != nil {
 		return nil, err
 	}
 	a.Profiles = m.Profiles(a.Distances)
+	if err := m.planned(ctx, a); err != nil {
+		return nil, err
+	}
 	return a, ctx.Err()
 }
 

@@ -105,6 +105,9 @@ func newReport(b *book, pictures []picture) *report {
 	add(sheetLevels, r.levelTable)
 	add(sheetDistances, r.distances)
 	add(sheetByAntenna, r.distancesByAntenna)
+	if covers(b.a) {
+		add(sheetCoverage, r.coverage)
+	}
 	add(sheetBoundaries, r.boundaries)
 	if len(pictures) > 0 {
 		add(sheetFigures, r.figures)
@@ -114,6 +117,12 @@ func newReport(b *book, pictures []picture) *report {
 	if len(b.a.Profiles) > 0 {
 		add(sheetProfiles, r.profiles)
 	}
+	add(sheetPlan, r.workPlans)
+	add(sheetSwitching, r.switching)
+	add(sheetBarriers, r.barriers)
+	add(sheetMeasure, r.measureFirst)
+	add(sheetAssumptions, r.assumptions)
+	add(sheetStates, r.states)
 	add(sheetMethods, r.methods)
 	r.order = append(r.order, sheetColumns) // written last: it explains the columns of all others
 	add(sheetInputs, r.inputFiles)

@@ -63,6 +63,7 @@ func newRoot(std streams) *cobra.Command {
 		newField(std),
 		newDistance(std),
 		newZone(std),
+		newWork(std),
 		newReadings(std),
 		newAssess(std),
 		newMethods(std),
