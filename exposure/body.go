@@ -43,9 +43,13 @@ func (e *evaluator) body(x, y, from, to float64, useMean bool) (by groupRatios, 
 func (e *evaluator) means(x, y, from, to float64) (by groupRatios) {
 	for i := range e.terms {
 		t := &e.terms[i]
+		if !t.anyMean() {
+			continue
+		}
+		means := t.meansOver(e.rule, x, y, from, to)
 		for g := 0; g < e.ng; g++ {
 			if t.w[g].mean {
-				by[g] += t.meanOver(e.rule, g, x, y, from, to)
+				by[g] += means[g]
 			}
 		}
 	}
@@ -68,12 +72,25 @@ func (e *evaluator) bodyNear(x, y, at, from, to float64) groupRatios {
 func (e *evaluator) termNear(t *evalTerm, x, y, at, from, to float64) groupRatios {
 	var by groupRatios
 	t.at(Point{X: x, Y: y, Z: at}, e.rule, &by)
+	if to <= from || !t.anyMean() {
+		return by
+	}
+	means := t.meansOver(e.rule, x, y, from, to)
 	for g := 0; g < e.ng; g++ {
-		if t.w[g].mean && to > from {
-			by[g] = t.meanOver(e.rule, g, x, y, from, to)
+		if t.w[g].mean {
+			by[g] = means[g]
 		}
 	}
 	return by
+}
+
+func (t *evalTerm) anyMean() bool {
+	for g := range t.w {
+		if t.w[g].mean {
+			return true
+		}
+	}
+	return false
 }
 
 // tallest finds the height of a group's largest ratio over the body by branch
@@ -149,35 +166,54 @@ func (e *evaluator) peaksOver(b box, skipMean bool) groupRatios {
 	return sum
 }
 
-// meanOver is the mean of a term's ratio over the body: Gauss-Legendre with
-// eight points on halves until two levels agree to 1e-7.
+// meanOver is the mean of a term's ratio in group g over the body.
 func (t *evalTerm) meanOver(r *rule, g int, x, y, from, to float64) float64 {
-	var one groupRatios
-	rule := func(a, b float64) float64 {
-		sum := 0.0
-		for k, u := range gauss8 {
-			for _, s := range [2]float64{-1, 1} {
-				t.at(Point{X: x, Y: y, Z: (a+b)/2 + s*u*(b-a)/2}, r, &one)
-				sum += gauss8w[k] * one[g]
-			}
-		}
-		return sum * (b - a) / 2
-	}
-	var adapt func(a, b, whole float64, depth int) float64
-	adapt = func(a, b, whole float64, depth int) float64 {
-		mid := (a + b) / 2
-		left, right := rule(a, mid), rule(mid, b)
-		if depth == 0 || math.Abs(left+right-whole) <= 1e-7*math.Abs(whole) {
-			return left + right
-		}
-		return adapt(a, mid, left, depth-1) + adapt(mid, b, right, depth-1)
-	}
-	return adapt(from, to, rule(from, to), 12) / (to - from)
+	return t.meansOver(r, x, y, from, to)[g]
 }
 
-// Nodes and weights of the eight-point Gauss-Legendre rule, positive half
+// meansOver is the mean of a term's ratios over the body, by group:
+// Gauss-Legendre with four points on halves until two levels agree to 1e-5. The
+// finer level's error falls as 2^-8, so what is returned is good to 1e-7.
+func (t *evalTerm) meansOver(r *rule, x, y, from, to float64) groupRatios {
+	n := len(t.w)
+	rule := func(a, b float64) (sum groupRatios) {
+		var one groupRatios
+		for k, u := range gauss4 {
+			for _, s := range [2]float64{-1, 1} {
+				t.at(Point{X: x, Y: y, Z: (a+b)/2 + s*u*(b-a)/2}, r, &one)
+				for g := 0; g < n; g++ {
+					sum[g] += gauss4w[k] * one[g] * (b - a) / 2
+				}
+			}
+		}
+		return sum
+	}
+	var adapt func(a, b float64, whole groupRatios, depth int) groupRatios
+	adapt = func(a, b float64, whole groupRatios, depth int) groupRatios {
+		mid := (a + b) / 2
+		left, right := rule(a, mid), rule(mid, b)
+		agree := true
+		for g := 0; g < n; g++ {
+			agree = agree && math.Abs(left[g]+right[g]-whole[g]) <= 1e-5*math.Abs(whole[g])+1e-9*(b-a)
+		}
+		if depth > 0 && !agree {
+			left, right = adapt(a, mid, left, depth-1), adapt(mid, b, right, depth-1)
+		}
+		for g := 0; g < n; g++ {
+			left[g] += right[g]
+		}
+		return left
+	}
+	sum := adapt(from, to, rule(from, to), 14)
+	for g := range sum {
+		sum[g] /= to - from
+	}
+	return sum
+}
+
+// Nodes and weights of the four-point Gauss-Legendre rule, positive half
 // (Abramowitz and Stegun 1964, table 25.4).
 var (
-	gauss8  = [4]float64{0.183434642495650, 0.525532409916329, 0.796666477413627, 0.960289856497536}
-	gauss8w = [4]float64{0.362683783378362, 0.313706645877887, 0.222381034453374, 0.101228536290376}
+	gauss4  = [2]float64{0.339981043584856, 0.861136311594053}
+	gauss4w = [2]float64{0.652145154862546, 0.347854845137454}
 )

@@ -106,16 +106,23 @@ func (e *evaluator) largestOver(ctx context.Context, p *plane, most int) summit 
 		s.upper = math.Max(top.upper, s.lower)
 		small := top.b.h.X <= p.step/2 && top.b.h.Z <= p.step/2
 		if top.upper <= s.lower*(1+summitGap) || small || effort > most {
-			return s
+			break
 		}
 		heap.Pop(&h)
 		for _, b := range split(top.b, p.mean) {
 			consider(b, top.open)
 		}
 	}
+	if p.mean && s.lower > 0 {
+		// A column was bounded from below; say what it comes to, and where.
+		by, z := e.body(s.at.X, s.at.Y, p.from, p.to, true)
+		v, _ := by.largest(e.ng)
+		s.lower, s.at.Z = math.Max(s.lower, v), z
+	}
 	if len(h) == 0 {
 		s.upper = s.lower // every box that was left could not hold more
 	}
+	s.upper = math.Max(s.upper, s.lower)
 	return s
 }
 
