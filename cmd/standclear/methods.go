@@ -6,8 +6,7 @@ import (
 	"github.com/spf13/cobra"
 
 	"example.org/standclear/antenna"
-	"example.org/standclear/exposure"
-	"example.org/standclear/limits"
+	"example.org/standclear/exposure/survey"
 )
 
 func newMethods(std streams) *cobra.Command {
@@ -19,10 +18,7 @@ func newMethods(std streams) *cobra.Command {
   standclear methods --json`,
 		Args: arguments(0, 0, "no argument"),
 		RunE: func(*cobra.Command, []string) error {
-			notes := exposure.Methods()
-			for _, n := range limits.Methods() {
-				notes = append(notes, antenna.MethodNote(n))
-			}
+			notes := survey.Methods()
 			if asJSON {
 				return printJSON(std, map[string][]antenna.MethodNote{"methods": notes})
 			}

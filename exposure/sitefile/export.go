@@ -5,6 +5,8 @@ import (
 	"io/fs"
 	"strings"
 	"time"
+
+	"example.org/standclear/exposure/units"
 )
 
 // exportLead marks the lines that an instrument writes before the header of its
@@ -105,6 +107,25 @@ func (l *loader) headerNames(columnsFile string) map[string]bool {
 	return names
 }
 
+// isUnitsRow reports whether a row holds units, and zones of time, and nothing
+// else. A site's own readings beside exports have no such row.
+func isUnitsRow(r gridRow) bool {
+	known := 0
+	for _, c := range r.cells {
+		c = strings.Trim(c, "[]() ")
+		if c == "" {
+			continue
+		}
+		if _, ok := units.Lookup(c); !ok {
+			if _, ok := parseZone(c); !ok {
+				return false
+			}
+		}
+		known++
+	}
+	return known > 0
+}
+
 // straighten makes an export of the readings table one like any other: the row
 // of units joins the header, and local times take their stated zone.
 func (l *loader) straighten(g *grid) {
@@ -112,15 +133,11 @@ func (l *loader) straighten(g *grid) {
 		return
 	}
 	header := &g.rows[0]
-	if l.options.UnitsRow {
-		if len(g.rows) < 2 {
-			l.faults = append(l.faults, g.fault(*header, -1, "", "there is no row of units below the header; leave --units-row out"))
-			return
-		}
-		units := g.rows[1]
+	if l.options.UnitsRow && len(g.rows) > 1 && isUnitsRow(g.rows[1]) {
+		below := g.rows[1]
 		header.cells = append([]string(nil), header.cells...)
 		for i, h := range header.cells {
-			unit := strings.Trim(units.cell(i), "[]() ")
+			unit := strings.Trim(below.cell(i), "[]() ")
 			if _, _, has := splitHeader(h); unit != "" && h != "" && !has {
 				if m, ok := l.mappings[g.table][strings.ToLower(h)]; ok {
 					// The mapping goes by the header as the export has it.

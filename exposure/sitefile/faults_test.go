@@ -155,7 +155,8 @@ func TestFaultText(t *testing.T) {
 			`limits.csv:1: spot: spot value "public, S, 900 MHz, 12 W/m2": the table gives 10 W/m2 in row 3 (30 MHz to 300 GHz); correct the row, or the spot value if it was misread`}},
 		"spot without a unit": {with("limits.csv", "# spot: public, S, 900 MHz, 10\n"+small()["limits.csv"]), []string{
 			`limits.csv:1: spot: "10" has no unit; write one behind it, such as 61.4V/m or 98MHz`}},
-		"reading at an impossible time": {with("readings.csv", "id,instrument,time,z [m]\nR1,M1,2026-03-31 10:05,1\n"), []string{
+		"reading at an impossible time": {with("readings.csv", "id,instrument,time,x [m],y [m],z [m]\nR1,M1,2026-03-31 10:05,1,2,1\n",
+			"instruments.csv", "id,from [MHz],to [MHz]\nM1,30,3000\n"), []string{
 			`readings.csv:2: time: "2026-03-31 10:05" is not a time; write it as 2026-03-31T10:05:00Z, with its zone`}},
 		"mapping to an unknown table": {with("columns.csv", "table,from,to,unit\nreading,Level,E,V/m\n"), []string{
 			`columns.csv:2: table: there is no table "reading"; did you mean "readings"?`}},

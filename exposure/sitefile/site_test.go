@@ -340,7 +340,8 @@ func TestPatternFile(t *testing.T) {
 
 func TestColumnsMapping(t *testing.T) {
 	s := mustLoad(t, with("columns.csv", "table,from,to,unit\nreadings,Level,E,V/m\nreadings,Probe,instrument,\n",
-		"readings.csv", "id,Level,Probe,Battery,z [m]\nR1,2.5,M1,90,1\n"))
+		"readings.csv", "id,Level,Probe,Battery,x [m],y [m],z [m]\nR1,2.5,M1,90,1,2,1\n",
+		"instruments.csv", "id,from [MHz],to [MHz]\nM1,30,3000\n"))
 	var found bool
 	for _, table := range s.Inputs.Tables {
 		if table.Name == "readings" {

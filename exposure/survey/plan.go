@@ -114,6 +114,10 @@ func unused(taken map[string]bool, name string, n int) string {
 	return fmt.Sprintf("%s %d", name, n)
 }
 
+// headroom is how far, as a factor, a field may exceed its prediction before an
+// instrument's range is left.
+const headroom = 2
+
 // choose picks the broadband instrument that reaches the site's frequencies and
 // the expected field, and says how to set it.
 func choose(s *Survey, site *exposure.Site, e float64) (id, settings string) {
@@ -121,29 +125,35 @@ func choose(s *Survey, site *exposure.Site, e float64) (id, settings string) {
 	for _, x := range site.Sources {
 		lo, hi = min(lo, x.FrequencyHz), max(hi, x.FrequencyHz)
 	}
-	// Above its prediction a field may be by this much before a range is left.
-	const headroom = 2
-	best, open := -1, -1
+	best, rank := -1, 0
 	for i := range s.Instruments {
 		in := &s.Instruments[i]
-		if in.Kind != Broadband || in.OverloadVPerM > 0 && e*headroom > in.OverloadVPerM {
+		if in.Kind != Broadband {
 			continue
 		}
-		if in.FromHz <= lo && in.ToHz >= hi && best < 0 {
-			best = i
+		// What matters most counts most; of equals the first.
+		r := 1
+		if in.OverloadVPerM == 0 || e*headroom <= in.OverloadVPerM {
+			r += 4
 		}
-		if open < 0 {
-			open = i
+		if in.CalibrationDue == "" || !Overdue(in.CalibrationDue, site.About.SurveyDate) {
+			r += 8
 		}
-	}
-	if best < 0 {
-		best = open
+		if in.FromHz <= lo && in.ToHz >= hi {
+			r += 2
+		}
+		if r > rank {
+			best, rank = i, r
+		}
 	}
 	set := []string{"rms detector, isotropic"}
 	if best < 0 {
 		return "", strings.Join(set, "; ")
 	}
 	in := &s.Instruments[best]
+	if o := in.OverloadVPerM; o > 0 && e*headroom > o {
+		set = append(set, "expected within a factor of 2 of its overload or beyond")
+	}
 	if in.FromHz > lo || in.ToHz < hi {
 		set = append(set, fmt.Sprintf("the inventory runs from %s to %s, beyond this instrument", megahertz(lo), megahertz(hi)))
 	}
