@@ -198,33 +198,17 @@ func (m *Model) Assumptions(ctx context.Context, places []Place, distances []Dis
 		return nil, err
 	}
 	out := []AssumptionSet{}
-	ratios := func(v *Model) ([]PointResult, error) { return v.Field(ctx, places) }
-	base, err := ratios(m)
-	if err != nil {
-		return nil, err
-	}
-	others := make([][]PointResult, len(each))
-	for i := range each {
-		if others[i], err = ratios(each[i].model); err != nil {
-			return nil, err
-		}
-	}
-	high, err := ratios(conservative)
-	if err != nil {
-		return nil, err
-	}
-	low, err := ratios(best)
-	if err != nil {
-		return nil, err
-	}
-	for i := range base {
-		for _, class := range m.classesAt(base[i].Class) {
-			at := func(p []PointResult) Number { return p[i].class(class).ExposureRatio }
-			s := AssumptionSet{Place: base[i].ID, Class: class, Ratio: at(base), Conservative: Assumed{Ratio: at(high)}, BestEstimate: Assumed{Ratio: at(low)}}
+	for i := range places {
+		for _, class := range m.classesAt(places[i].Class) {
+			at := func(v *Model) Number { return v.classAt(&places[i], class).ExposureRatio }
+			s := AssumptionSet{Place: places[i].ID, Class: class, Ratio: at(m), Conservative: Assumed{Ratio: at(conservative)}, BestEstimate: Assumed{Ratio: at(best)}}
 			for k := range each {
-				s.add(each[k], at(others[k]))
+				s.add(each[k], at(each[k].model))
 			}
 			out = append(out, s)
+		}
+		if err := ctx.Err(); err != nil {
+			return nil, err
 		}
 	}
 	for _, d := range farthest(distances) {
@@ -246,6 +230,20 @@ func (s *AssumptionSet) add(a assumption, ratio Number) {
 		p.WorthDB = Number(10 * math.Log10(float64(ratio/s.Ratio)))
 	}
 	s.Parts = append(s.Parts, p)
+}
+
+// classAt is one class's ratio and verdict at a place, without the parts of the
+// sources.
+func (m *Model) classAt(pl *Place, class string) ClassRatio {
+	r := m.rule(class)
+	if m.largestCounts(pl) {
+		r = r.asLargest()
+	}
+	ground := m.placeFactor(pl)
+	e := m.evaluator(r, nil, ground*math.Sqrt(orOne(pl.WallLoss)), siteFrame, 1)
+	foot, head := pl.At.Z+pl.From, pl.At.Z+pl.To
+	by, _ := e.body(pl.At.X, pl.At.Y, foot, head, r.anyMean)
+	return m.judge(r, by, box{c: Point{X: pl.At.X, Y: pl.At.Y}}.heights(foot, head), ground)
 }
 
 // classesAt is the class that may be at a place, every class where none is named.

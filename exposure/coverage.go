@@ -35,12 +35,20 @@ var coverageInputs = [...]string{"power and gain", "tilt", "azimuth", "position"
 // pose: second-order in tilt, azimuth and the three coordinates, by central
 // differences of one standard uncertainty.
 type response struct {
-	sigmaDB       float64 // power and gain together
-	housing       int     // rows of one housing share their pose draws
-	own           int     // number of the row's own power draw
-	value         [lineSamples]float64
-	first, second [5][lineSamples]float64 // by standard unit of tilt, azimuth, x, y, z
-	varies        [5]bool
+	sigmaDB float64 // power and gain together
+	housing int     // rows of one housing share their pose draws
+	own     int     // number of the row's own power draw
+	at      []sample
+	varies  [5]bool
+	inputs  []int // the pose inputs that vary
+}
+
+// sample is a member's response at one point of the line: the natural logarithm
+// of its ratio, and its first and second differences by standard unit of tilt,
+// azimuth, x, y and z.
+type sample struct {
+	value         float64
+	first, second [5]float64
 }
 
 // coverLine is a straight line on which the crossing of the boundary is
@@ -128,12 +136,11 @@ func deviation(x []float64) float64 {
 // coverLine tables every member's ratio along the line and how it answers to
 // its inputs.
 func (m *Model) coverLine(e *evaluator, f frame, b bracket) *coverLine {
-	// From a third of the distance to three times, in equal steps of its
-	// logarithm: the boundary is never expected to leave that.
+	// In equal steps of the logarithm of distance.
 	at := make([]float64, lineSamples)
 	points := make([]Point, lineSamples)
 	for i := range at {
-		at[i] = b.outer * math.Pow(3, 2*float64(i)/(lineSamples-1)-1)
+		at[i] = b.outer * math.Pow(lineReach, 2*float64(i)/(lineSamples-1)-1)
 		points[i] = Point{X: at[i], Y: b.at.Y, Z: b.at.Z}
 	}
 	l := m.responses(e, f, points)
@@ -146,6 +153,7 @@ func (m *Model) coverLine(e *evaluator, f frame, b bracket) *coverLine {
 func (m *Model) responses(e *evaluator, f frame, points []Point) *coverLine {
 	l := &coverLine{}
 	housings := map[string]int{}
+	rows := 0
 	for ti := range e.terms {
 		t := &e.terms[ti]
 		var members []response
@@ -159,19 +167,23 @@ func (m *Model) responses(e *evaluator, f frame, points []Point) *coverLine {
 				housings[key] = len(housings)
 			}
 			u := src.Uncertainty
-			r := response{sigmaDB: math.Hypot(u.PowerDB, u.GainDB), housing: housings[key], own: t.source[j]}
+			r := response{sigmaDB: math.Hypot(u.PowerDB, u.GainDB), housing: housings[key], own: rows, at: make([]sample, len(points))}
+			rows++
 			steps := [5]float64{u.TiltRad, u.AzimuthRad, u.PositionM, u.PositionM, u.PositionM}
-			for i, p := range points {
-				r.value[i] = logRatio(e, t, j, p)
-				for k, s := range steps {
-					if s == 0 {
-						continue
-					}
+			for k, s := range steps {
+				if s != 0 {
 					r.varies[k] = true
-					up := logRatio(e, t, j, f.moved(src, p, k, s))
-					down := logRatio(e, t, j, f.moved(src, p, k, -s))
-					r.first[k][i] = (up - down) / 2
-					r.second[k][i] = (up - 2*r.value[i] + down) / 2
+					r.inputs = append(r.inputs, k)
+				}
+			}
+			for i, p := range points {
+				v := &r.at[i]
+				v.value = logRatio(e, t, j, p)
+				for _, k := range r.inputs {
+					up := logRatio(e, t, j, f.moved(src, p, k, steps[k]))
+					down := logRatio(e, t, j, f.moved(src, p, k, -steps[k]))
+					v.first[k] = (up - down) / 2
+					v.second[k] = (up - 2*v.value + down) / 2
 				}
 			}
 			members = append(members, r)
@@ -188,6 +200,9 @@ func logRatio(e *evaluator, t *evalTerm, j int, p Point) float64 {
 	var by groupRatios
 	one.at(p, e.rule, &by)
 	v, _ := by.largest(e.ng)
+	if !(v <= 1e30) {
+		v = 1e30 // on the wire itself
+	}
 	return math.Log(math.Max(v, 1e-30))
 }
 
@@ -284,12 +299,13 @@ func (l *coverLine) ratio(i int, draw [][]memberDraw) float64 {
 		amp := 0.0
 		for j := range t {
 			r, d := &t[j], &draw[k][j]
-			x := r.value[i] + d.db
-			for a, z := range d.pose {
-				if z != 0 {
-					x += z * (r.first[a][i] + z*r.second[a][i])
-				}
+			v := &r.at[i]
+			x := v.value + d.db
+			for _, a := range r.inputs {
+				z := d.pose[a]
+				x += z * (v.first[a] + z*v.second[a])
 			}
+			x = math.Min(x, mostLogRatio)
 			if len(t) == 1 {
 				sum += math.Exp(x)
 				break
@@ -301,12 +317,29 @@ func (l *coverLine) ratio(i int, draw [][]memberDraw) float64 {
 	return sum
 }
 
+// lineReach is how many times farther and nearer than the distance the line is
+// tabled: the boundary is never expected to leave that.
+const lineReach = 3
+
+// mostLogRatio bounds the logarithm of a member's ratio: beside a null of its
+// pattern the second differences are those of the floor under the logarithm, and
+// far draws would otherwise overflow.
+const mostLogRatio = 60
+
 // crossing finds where the trial's ratio falls to 1 beside the nominal
-// boundary: the walk starts there and goes outward while the ratio is above 1,
-// else inward, and ends between two samples by interpolation in logarithms.
+// boundary. A first step goes to where a ratio that falls with the square of
+// distance would cross; from there the walk goes outward while the ratio is
+// above 1, else inward, and ends between two samples by interpolation in
+// logarithms.
 func (l *coverLine) crossing(draw [][]memberDraw) float64 {
-	i := (lineSamples - 1) / 2
-	v := l.ratio(i, draw)
+	const middle, fall = (lineSamples - 1) / 2, 2
+	logStep := math.Log(lineReach) / middle
+	v := l.ratio(middle, draw)
+	jump := math.Log(math.Min(math.Max(v, 1e-30), 1e30)) / (fall * logStep)
+	i := middle + int(math.Max(-middle, math.Min(middle, jump)))
+	if i != middle {
+		v = l.ratio(i, draw)
+	}
 	for v > 1 && i < lineSamples-1 {
 		next := l.ratio(i+1, draw)
 		if next <= 1 {

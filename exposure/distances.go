@@ -21,7 +21,7 @@ import (
 const (
 	extentFine, extentFineM     = 1e-3, 0.005
 	extentCoarse, extentCoarseM = 5e-3, 0.02
-	extentCheap, extentMost     = 2000, 12_000
+	extentCheap, extentMost     = 1500, 9_000
 )
 
 // target is what a distance is measured from: a row, a housing or all.
@@ -69,7 +69,7 @@ func (m *Model) Distances(ctx context.Context, q DistanceQuery) ([]Distance, err
 	for i, j := range jobs {
 		first[i] = i
 		for _, k := range unique {
-			if q.Direction == nil && q.Coverage == nil && jobs[k].r == j.r && m.alike(jobs[k].t, j.t) {
+			if q.Direction == nil && jobs[k].r == j.r && m.alike(jobs[k].t, j.t, q.Coverage != nil) {
 				first[i] = k
 				break
 			}
@@ -201,7 +201,7 @@ func (m *Model) compass() [6]axis {
 // alike reports whether two targets have the same extents: the same rows but for
 // their names, places and bearings, arranged the same way in frames that are
 // turned the same way. Ground rays tie a source to its place.
-func (m *Model) alike(a, b *target) bool {
+func (m *Model) alike(a, b *target, uncertainties bool) bool {
 	if a.all || b.all || len(a.members) != len(b.members) || len(a.members) > 32 || m.site.Ground.Method == GroundFresnel {
 		return false
 	}
@@ -221,7 +221,10 @@ func (m *Model) alike(a, b *target) bool {
 			return false
 		}
 		s.ID, s.Operator, s.OperatorReference, s.Service, s.Housing, s.Transmitter = t.ID, t.Operator, t.OperatorReference, t.Service, t.Housing, t.Transmitter
-		s.State, s.DataFrom, s.DataDate, s.Row, s.Position, s.Pose, s.Uncertainty = t.State, t.DataFrom, t.DataDate, t.Row, t.Position, t.Pose, t.Uncertainty
+		s.State, s.DataFrom, s.DataDate, s.Row, s.Position, s.Pose = t.State, t.DataFrom, t.DataDate, t.Row, t.Position, t.Pose
+		if !uncertainties {
+			s.Uncertainty = t.Uncertainty
+		}
 		if !reflect.DeepEqual(s, t) {
 			return false
 		}
@@ -309,7 +312,7 @@ func (m *Model) distances(ctx context.Context, t *target, r *rule, ray *RayDirec
 			}
 			d.end = &farEnd{centre: t.centre, dir: a.dir, tip: tip, members: t.members, housed: t.antenna != "" && m.sources[t.members[0]].src.Housing != ""}
 		}
-		if coverage != nil && !b.none {
+		if coverage != nil && !b.none && b.outer > 2*boxSlack { // a boundary ahead of the centre
 			if err := m.cover(ctx, &d, e, f, b, coverage); err != nil {
 				return nil, err
 			}

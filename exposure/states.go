@@ -130,14 +130,11 @@ func nameWorst(states []StateResult) {
 // state answers the places, surfaces and distances of one state.
 func (m *Model) state(ctx context.Context) (StateResult, error) {
 	s := StateResult{Places: []StateRatio{}, Surfaces: []StateRatio{}, Distances: []Distance{}}
-	points, err := m.Field(ctx, m.site.Places)
-	if err != nil {
-		return s, err
-	}
-	for i := range points {
-		for _, class := range m.classesAt(points[i].Class) {
-			c := points[i].class(class)
-			s.Places = append(s.Places, StateRatio{points[i].ID, class, c.ExposureRatio, c.Verdict, c.Reason})
+	for i := range m.site.Places {
+		p := &m.site.Places[i]
+		for _, class := range m.classesAt(p.Class) {
+			c := m.classAt(p, class)
+			s.Places = append(s.Places, StateRatio{p.ID, class, c.ExposureRatio, c.Verdict, c.Reason})
 		}
 	}
 	for i := range m.site.Surfaces {
@@ -146,7 +143,7 @@ func (m *Model) state(ctx context.Context) (StateResult, error) {
 		if r == nil {
 			continue
 		}
-		top, err := m.largestOn(ctx, f.ID, r)
+		top, err := m.largestOn(ctx, f.ID, r, summitDecided)
 		if err != nil {
 			return s, err
 		}
