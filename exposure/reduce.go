@@ -490,7 +490,7 @@ func (p *workProblem) confirmed(ctx context.Context, name string, solve func() (
 // class: the outer line is empty.
 func (m *Model) allWithin(ctx context.Context, surface, class string) (within bool, reason string, err error) {
 	r := m.rule(class)
-	top, err := m.largestOn(ctx, surface, r)
+	top, err := m.largestOn(ctx, surface, r, summitDecided)
 	switch {
 	case err != nil:
 		return false, "", err

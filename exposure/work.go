@@ -188,7 +188,7 @@ func (m *Model) Work(ctx context.Context, q WorkQuery) (*Work, error) {
 		}
 	}
 	if q.Surface != "" {
-		top, err := m.largestOn(ctx, q.Surface, r)
+		top, err := m.largestOn(ctx, q.Surface, r, summitDecided)
 		if err != nil {
 			return nil, err
 		}
@@ -234,8 +234,8 @@ func (p *PointResult) class(name string) ClassRatio {
 	return ClassRatio{}
 }
 
-// largestOn finds the largest ratio on a surface.
-func (m *Model) largestOn(ctx context.Context, surface string, r *rule) (summit, error) {
+// largestOn finds the largest ratio on a surface, with an effort of most bounds.
+func (m *Model) largestOn(ctx context.Context, surface string, r *rule, most int) (summit, error) {
 	regions, err := m.regions(&ZoneQuery{Surfaces: []string{surface}})
 	if err != nil {
 		return summit{}, err
@@ -243,7 +243,7 @@ func (m *Model) largestOn(ctx context.Context, surface string, r *rule) (summit,
 	g := regions[0]
 	e := m.evaluator(r, nil, g.factor, g.frame, 1)
 	p := newPlane(g.rings, DefaultResolutionM, g.from, g.to, r.anyMean && !g.peak && g.to > g.from)
-	return e.largestOver(ctx, p, summitEffort), ctx.Err()
+	return e.largestOver(ctx, p, most), ctx.Err()
 }
 
 // worstOn is the place of the largest ratio on a surface, with the body that the
@@ -252,7 +252,7 @@ func (m *Model) worstOn(ctx context.Context, surface string, r *rule) (*Place, e
 	if len(r.groups) == 0 {
 		return nil, nil
 	}
-	top, err := m.largestOn(ctx, surface, r)
+	top, err := m.largestOn(ctx, surface, r, summitDecided)
 	if err != nil || top.lower == 0 {
 		return nil, err
 	}
