@@ -78,6 +78,29 @@ func (p *probe) means(x, y float64) (by groupRatios) {
 	return by
 }
 
+// exact returns the means by the midpoint rule on steps of a tenth of a
+// millimetre, which errs by less than 1e-7 here: the quick quadrature of means may
+// step over a kink of a pattern.
+func (p *probe) exact(x, y float64) (by groupRatios) {
+	const parts = 20_000
+	if !p.mean {
+		return by
+	}
+	var one groupRatios
+	for i := range p.e.terms {
+		t := &p.e.terms[i]
+		for k := 0; k < parts; k++ {
+			t.at(Point{X: x, Y: y, Z: p.from + (p.to-p.from)*(float64(k)+0.5)/parts}, p.e.rule, &one)
+			for g := 0; g < p.e.ng; g++ {
+				if t.w[g].mean {
+					by[g] += one[g] / parts
+				}
+			}
+		}
+	}
+	return by
+}
+
 // at returns the ratio with the height-dependent part taken at z.
 func (p *probe) at(means groupRatios, x, y, z float64) float64 {
 	by := p.e.peaksAt(Point{X: x, Y: y, Z: z}, p.mean)
@@ -90,10 +113,13 @@ func (p *probe) at(means groupRatios, x, y, z float64) float64 {
 
 // dense returns the largest ratio over count heights, and where it is.
 func (p *probe) dense(x, y float64, count int) (best, at float64) {
+	return p.denseWith(p.means(x, y), x, y, count)
+}
+
+func (p *probe) denseWith(means groupRatios, x, y float64, count int) (best, at float64) {
 	if p.to == p.from {
 		count = 1
 	}
-	means := p.means(x, y)
 	for k := 0; k < count; k++ {
 		z := p.from
 		if count > 1 {
@@ -109,10 +135,10 @@ func (p *probe) dense(x, y float64, count int) (best, at float64) {
 // summit climbs from the best of many heights to the largest ratio near it.
 func (p *probe) summit(x, y float64) float64 {
 	const heights = 400
-	best, at := p.dense(x, y, heights)
+	means := p.exact(x, y)
+	best, at := p.denseWith(means, x, y, heights)
 	step := (p.to - p.from) / (heights - 1)
 	lo, hi := math.Max(p.from, at-step), math.Min(p.to, at+step)
-	means := p.means(x, y)
 	for hi-lo > 1e-9 {
 		a, b := lo+(hi-lo)/3, hi-(hi-lo)/3
 		va, vb := p.at(means, x, y, a), p.at(means, x, y, b)
@@ -205,11 +231,11 @@ func (c *tally) look(t *testing.T, s *madeSite, n int) {
 	p := s.probe(m, f)
 	outer, inner := newBands(z.Outer), newBands(z.Inner)
 	share := s.query.Share
-	// A mean over the body is known to 1e-7, the accuracy of its quadrature;
-	// values at a height are held to the last bit.
+	// Values at a height are held to the last bit, means to the accuracy of
+	// the midpoint rule.
 	slack := 0.0
 	if p.mean {
-		slack = 1e-6
+		slack = 1e-7
 	}
 	faults := 0
 	for k := 0; k < n && faults < 3; k++ {
@@ -217,6 +243,9 @@ func (c *tally) look(t *testing.T, s *madeSite, n int) {
 		ratio, height := p.dense(x, y, 17)
 		isOuter := outer.contains(x, y) || z.Outer.Contains(x, y)
 		ok := true
+		if ratio > share && !isOuter && p.mean {
+			ratio, height = p.denseWith(p.exact(x, y), x, y, 17)
+		}
 		if ratio > share*(1+slack) {
 			c.above++
 			ok = assert.True(t, isOuter, "%v: ratio %v at (%v, %v, %v) exceeds %v outside the outer line", s, ratio, x, y, height, share)
@@ -242,7 +271,7 @@ func (c *tally) look(t *testing.T, s *madeSite, n int) {
 // holes inside; and on the surface.
 func TestZonePolygonsAreValid(t *testing.T) {
 	corners := 0
-	for seed := uint64(1); seed <= madeSites+15; seed++ {
+	for seed := uint64(1); seed <= madeSites+8; seed++ {
 		s := newMadeSite(seed)
 		if seed > madeSites {
 			s.query.ResolutionM = 0.07 // other steps meet the outline elsewhere

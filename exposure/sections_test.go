@@ -100,7 +100,7 @@ func TestLargestRatioHoldsAgainstSampling(t *testing.T) {
 		require.NoError(t, err, "%v", s)
 		f, z := &s.site.Surfaces[0], &zones[0]
 		p := s.probe(m, f)
-		upper := float64(z.MaxRatioUpper) * (1 + 1e-6) // the accuracy of a mean's quadrature
+		upper := float64(z.MaxRatioUpper) * (1 + 3e-4) // what a kink may cost a mean's quadrature
 		require.LessOrEqual(t, float64(z.MaxRatioLower), float64(z.MaxRatioUpper), "%v", s)
 		for k := 0; k < 800; k++ {
 			x, y := s.draw(f, z)
@@ -125,7 +125,7 @@ func TestLargestRatioHoldsAgainstSampling(t *testing.T) {
 			if p.mean {
 				v = p.summit(at[0], at[1])
 			}
-			assert.GreaterOrEqual(t, v, float64(z.MaxRatioLower)*(1-1e-6), "%v at %v", s, at)
+			assert.GreaterOrEqual(t, v, float64(z.MaxRatioLower)*(1-3e-4), "%v at %v", s, at)
 		}
 	}
 }
