@@ -31,6 +31,9 @@ func (m *Model) Assess(ctx context.Context, o AssessOptions) (*Assessment, error
 	if a.Sections, err = m.housingSections(ctx, a.Distances, o.ResolutionM); err != nil {
 		return nil, err
 	}
+	if left := len(m.housings()) - mostSections; left > 0 {
+		a.Notices = append(a.Notices, fmt.Sprintf("Vertical sections are drawn through the %d housings whose boundary reaches farthest; %d other housings have none.", mostSections, left))
+	}
 	if a.BoundaryPoints, err = m.BoundaryPoints(ctx, a.Zones, a.Sections); err != nil {
 		return nil, err
 	}

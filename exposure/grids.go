@@ -3,6 +3,7 @@ package exposure
 import (
 	"context"
 	"math"
+	"sort"
 	"sync"
 	"sync/atomic"
 )
@@ -15,6 +16,7 @@ const gridSamples = 64
 func (m *Model) Grids(ctx context.Context, lists ...[]Zone) ([]RatioGrid, error) {
 	var out []RatioGrid
 	for _, zones := range lists {
+		zones = shownOnSection(zones)
 		for i := range zones {
 			z := &zones[i]
 			r := m.rule(z.Class)
@@ -38,6 +40,21 @@ func (m *Model) Grids(ctx context.Context, lists ...[]Zone) ([]RatioGrid, error)
 		}
 	}
 	return out, ctx.Err()
+}
+
+// shownOnSection keeps of each section the class whose ratio is largest: a figure
+// of a section shows the contour lines of one class. Boundaries on surfaces stay.
+func shownOnSection(zones []Zone) []Zone {
+	var out []Zone
+	for _, z := range zones {
+		n := len(out)
+		if n == 0 || z.Section == nil || *out[n-1].Section != *z.Section {
+			out = append(out, z)
+		} else if z.MaxRatioLower > out[n-1].MaxRatioLower {
+			out[n-1] = z
+		}
+	}
+	return out
 }
 
 // grid samples one class over the extent of a region, over the body heights as
@@ -102,24 +119,39 @@ func (e *evaluator) sample(x, y, from, to float64, mean bool) float64 {
 	return v
 }
 
+// sectionStep is how much coarser an assessment's sections are than its
+// surfaces: they are for looking at.
+const sectionStep = 2
+
+// mostSections bounds the sections of an assessment: of very many housings only
+// those whose boundary reaches farthest have one.
+const mostSections = 24
+
 // housingSections lays a vertical plane through each housing along its first
 // row's azimuth, long enough to show the whole boundary, and bounds every class
 // on it.
 func (m *Model) housingSections(ctx context.Context, distances []Distance, resolution float64) ([]Zone, error) {
+	if resolution == 0 {
+		resolution = DefaultResolutionM
+	}
 	far := map[string]float64{}
 	for _, d := range distances {
 		if d.Housing != "" {
 			far[d.Housing] = math.Max(far[d.Housing], d.DistanceM)
 		}
 	}
+	first := m.housings()
+	order := append([]*Source(nil), first...)
+	sort.SliceStable(order, func(i, j int) bool { return far[order[i].Housing] > far[order[j].Housing] })
+	shown := map[string]bool{}
+	for _, s := range order[:min(mostSections, len(order))] {
+		shown[s.Housing] = true
+	}
 	var out []Zone
-	seen := map[string]bool{}
-	for i := range m.sources {
-		s := m.sources[i].src
-		if s.Housing == "" || seen[s.Housing] {
+	for _, s := range first {
+		if !shown[s.Housing] {
 			continue
 		}
-		seen[s.Housing] = true
 		sin, cos := math.Sincos(s.Pose.AzimuthRad)
 		back, ahead := 5+0.3*far[s.Housing], 5+1.3*far[s.Housing]
 		section := Section{
@@ -132,7 +164,7 @@ func (m *Model) housingSections(ctx context.Context, distances []Distance, resol
 				section.FromZM = math.Min(section.FromZM, math.Max(math.Floor(f.Z)-1, math.Floor(s.Position.Z-3-far[s.Housing])))
 			}
 		}
-		zones, err := m.Zones(ctx, ZoneQuery{Section: &section, ResolutionM: resolution})
+		zones, err := m.Zones(ctx, ZoneQuery{Section: &section, ResolutionM: sectionStep * resolution})
 		if err != nil {
 			return nil, err
 		}
@@ -142,4 +174,17 @@ func (m *Model) housingSections(ctx context.Context, distances []Distance, resol
 		out = append(out, zones...)
 	}
 	return out, nil
+}
+
+// housings lists the first row of each housing.
+func (m *Model) housings() []*Source {
+	var out []*Source
+	seen := map[string]bool{}
+	for i := range m.sources {
+		if s := m.sources[i].src; s.Housing != "" && !seen[s.Housing] {
+			seen[s.Housing] = true
+			out = append(out, s)
+		}
+	}
+	return out
 }

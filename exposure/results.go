@@ -260,9 +260,12 @@ type Assessment struct {
 	// Sections are the boundaries on a vertical plane through each housing, along
 	// its first row's azimuth.
 	Sections []Zone `json:"sections,omitempty"`
-	// Grids are sampled ratios for contour lines, one for each zone and each
-	// section.
+	// Grids are sampled ratios for contour lines: one for each zone, and for each
+	// section that of the class whose ratio is largest there.
 	Grids []RatioGrid `json:"-"`
+	// BoundaryPoints are points of each boundary with their calculation written
+	// out, for an assessor to check by hand.
+	BoundaryPoints []BoundaryPoint `json:"boundary_points,omitempty"`
 	// Profiles are ratio against distance along each row's main beam.
 	Profiles []Profile `json:"profiles,omitempty"`
 	// Work is a plan for each place and each surface that is above the limits

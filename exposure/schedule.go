@@ -68,16 +68,7 @@ func (m *Model) Schedule(ctx context.Context, zones []Zone) ([]Barrier, error) {
 // extent.
 func (b *Barrier) measure(poly []Ring, s *Surface, resolution float64) {
 	b.FromXM, b.FromYM, b.ToXM, b.ToYM = math.Inf(1), math.Inf(1), math.Inf(-1), math.Inf(-1)
-	onEdge := func(p [2]float64) bool {
-		for _, r := range s.Outline {
-			for i := 0; i+1 < len(r); i++ {
-				if toSegment(p, r[i], r[i+1]) <= 1.5*resolution {
-					return true
-				}
-			}
-		}
-		return false
-	}
+	onEdge := func(p [2]float64) bool { return besideOutline(p, s.Outline, 1.5*resolution) }
 	for _, r := range poly {
 		for i := 0; i+1 < len(r); i++ {
 			p, q := r[i], r[i+1]
@@ -91,6 +82,18 @@ func (b *Barrier) measure(poly []Ring, s *Surface, resolution float64) {
 			}
 		}
 	}
+}
+
+// besideOutline reports whether p lies within a distance in m of the outline.
+func besideOutline(p [2]float64, outline []Ring, within float64) bool {
+	for _, r := range outline {
+		for i := 0; i+1 < len(r); i++ {
+			if toSegment(p, r[i], r[i+1]) <= within {
+				return true
+			}
+		}
+	}
+	return false
 }
 
 // toSegment is the distance in m of p from the segment a to c.
