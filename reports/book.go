@@ -10,6 +10,7 @@ import (
 	"unicode/utf8"
 
 	"example.org/standclear/exposure"
+	"example.org/standclear/exposure/survey"
 	"github.com/xuri/excelize/v2"
 )
 
@@ -58,6 +59,7 @@ const firstRow = 4
 type book struct {
 	f         *excelize.File
 	a         *exposure.Assessment
+	measured  *survey.Result // nil = nothing was measured
 	styles    map[look]int
 	explained []explained
 	logCharts int // charts, counted from the first, whose x axis is made logarithmic

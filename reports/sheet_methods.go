@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"example.org/standclear/exposure"
+	"example.org/standclear/exposure/survey"
 )
 
 var methodColumns = []column{
@@ -19,6 +20,9 @@ var columnColumns = []column{
 // methods writes every method with its formula, range and source.
 func (r *report) methods() {
 	notes := exposure.Methods()
+	if r.measured != nil {
+		notes = survey.Methods()
+	}
 	r.write(page{
 		name: sheetMethods, title: "Methods and sources", landscape: true,
 		intro:  "Published methods, and choices of this program, which are marked \"own choice\". Sheet " + sheetColumns + " says which column of figures rests on which.",

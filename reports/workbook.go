@@ -5,6 +5,7 @@ import (
 	"strconv"
 
 	"example.org/standclear/exposure"
+	"example.org/standclear/exposure/survey"
 	"github.com/xuri/excelize/v2"
 )
 
@@ -32,8 +33,13 @@ const (
 
 // workbook writes the report workbook. The figures are those of the folder.
 func workbook(a *exposure.Assessment, pictures []picture) ([]byte, error) {
+	return surveyWorkbook(a, pictures, nil)
+}
+
+// surveyWorkbook is workbook with what was measured; measured may be nil.
+func surveyWorkbook(a *exposure.Assessment, pictures []picture, measured *survey.Result) ([]byte, error) {
 	f := excelize.NewFile()
-	b := &book{f: f, a: a, styles: map[look]int{}}
+	b := &book{f: f, a: a, measured: measured, styles: map[look]int{}}
 	b.keep(f.SetDefaultFont(fontName))
 	r := newReport(b, pictures)
 	for i, name := range r.order {
@@ -123,6 +129,14 @@ func newReport(b *book, pictures []picture) *report {
 	add(sheetMeasure, r.measureFirst)
 	add(sheetAssumptions, r.assumptions)
 	add(sheetStates, r.states)
+	if b.measured != nil {
+		add(sheetReadings, r.readings)
+		add(sheetMeasured, r.measuredPlaces)
+		add(sheetUnexplained, r.unexplained)
+		if len(b.measured.Budgets) > 0 {
+			add(sheetUncertainty, r.budgets)
+		}
+	}
 	add(sheetMethods, r.methods)
 	r.order = append(r.order, sheetColumns) // written last: it explains the columns of all others
 	add(sheetInputs, r.inputFiles)

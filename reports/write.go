@@ -16,10 +16,14 @@ import (
 	"strings"
 
 	"example.org/standclear/exposure"
+	"example.org/standclear/exposure/survey"
 )
 
 // Options of a report.
 type Options struct {
+	// Survey, when not nil, is what was measured: it adds its sheets and figures
+	// to the report, and the file readings.json.
+	Survey *survey.Result
 	// Force replaces a report that is there.
 	Force bool
 	// Context, when not nil, stops the writing; what was there before stays.
@@ -37,7 +41,7 @@ var ErrExists = errors.New("is there already; use --force to replace the report"
 // Write writes the report into a folder, which it makes if need be, and returns
 // the names of the files written, in the folder and in alphabetical order:
 // report.xlsx, results.json, zones.geojson, settingout.csv, the figures as SVG
-// and PNG, files.sha256 and, for a site with a position, zones-wgs84.geojson
+// and PNG, files.sha256, readings.json where there is a survey and, for a site with a position, zones-wgs84.geojson
 // and zones.kml.
 //
 // Everything is written and synced beside its place first and moved into it at
@@ -69,7 +73,7 @@ func Write(a *exposure.Assessment, dir string, o Options) (files []string, err e
 	}
 	defer os.RemoveAll(stage)
 	w := &writer{ctx: ctx, dir: dir, stage: stage}
-	if err := w.all(a, o.Force); err != nil {
+	if err := w.all(a, o.Survey, o.Force); err != nil {
 		return nil, err
 	}
 	if err := w.install(o.Force); err != nil {
@@ -99,7 +103,7 @@ type writer struct {
 }
 
 // all stages every file of the report.
-func (w *writer) all(a *exposure.Assessment, force bool) error {
+func (w *writer) all(a *exposure.Assessment, measured *survey.Result, force bool) error {
 	w.sums = map[string]string{}
 	if !force {
 		// Before the work is done rather than after it.
@@ -113,14 +117,25 @@ func (w *writer) all(a *exposure.Assessment, force bool) error {
 	if err != nil {
 		return err
 	}
+	more, err := drawReadings(w.ctx, a, measured)
+	if err != nil {
+		return err
+	}
+	pictures = append(pictures, more...)
 	steps := []struct {
 		name  string
 		write func(io.Writer) error
 	}{
-		{"report.xlsx", fromBytes(func() ([]byte, error) { return workbook(a, pictures) })},
+		{"report.xlsx", fromBytes(func() ([]byte, error) { return surveyWorkbook(a, pictures, measured) })},
 		{"results.json", func(out io.Writer) error { return JSON(out, a) }},
 		{"zones.geojson", fromBytes(func() ([]byte, error) { return GeoJSON(a, false) })},
 		{"settingout.csv", fromBytes(func() ([]byte, error) { return SettingOut(a) })},
+	}
+	if measured != nil {
+		steps = append(steps, struct {
+			name  string
+			write func(io.Writer) error
+		}{"readings.json", func(out io.Writer) error { return readingsJSON(out, measured) }})
 	}
 	if a.Site.About.HasPosition {
 		steps = append(steps, []struct {

@@ -9,7 +9,9 @@ import (
 	"github.com/spf13/cobra"
 
 	"example.org/standclear/exposure"
+	"example.org/standclear/exposure/sitefile"
 	"example.org/standclear/exposure/sitefile/demo"
+	"example.org/standclear/exposure/survey"
 	"example.org/standclear/reports"
 )
 
@@ -17,6 +19,7 @@ type assessOptions struct {
 	siteFlags
 	out                 string
 	resolution          string
+	coverage            string
 	demo, force, strict bool
 }
 
@@ -42,6 +45,7 @@ func newAssess(std streams) *cobra.Command {
 	c.Flags().BoolVar(&o.demo, "demo", false, "the invented demo site that the program carries, in place of SITE")
 	c.Flags().BoolVar(&o.force, "force", false, "replace a report that is already there")
 	c.Flags().StringVar(&o.resolution, "resolution", "0.05", "width in `METRES` to which the keep-out lines enclose the model's boundary")
+	c.Flags().StringVar(&o.coverage, "coverage", "", "tell too the distances that cover this `SHARE` of what the data's standard uncertainties allow, such as 95%")
 	strictFlag(c, &o.strict)
 	return c
 }
@@ -54,17 +58,18 @@ func runAssess(ctx context.Context, std streams, o assessOptions, args []string)
 	if err != nil {
 		return err
 	}
+	coverage, err := coverageOf(o.coverage, exposure.DefaultSeed)
+	if err != nil {
+		return err
+	}
 	if err := vacant(o.out, o.force); err != nil {
 		return err
 	}
-	var site *exposure.Site
 	name := "demo"
-	if o.demo {
-		site, err = o.loadFS(std, demo.FS)
-	} else {
+	if !o.demo {
 		name = args[0]
-		site, err = o.load(std, name)
 	}
+	site, measured, err := o.loadSurvey(std, name)
 	if err != nil {
 		return err
 	}
@@ -74,12 +79,18 @@ func runAssess(ctx context.Context, std streams, o assessOptions, args []string)
 		end()
 		return err
 	}
-	a, err := model.Assess(ctx, exposure.AssessOptions{Program: program, ResolutionM: width})
+	a, err := model.Assess(ctx, exposure.AssessOptions{Program: program, ResolutionM: width, Coverage: coverage})
 	end()
 	if err != nil {
 		return err
 	}
-	if _, err := reports.Write(a, o.out, reports.Options{Force: o.force, Context: ctx}); err != nil {
+	var readings *survey.Result
+	if !measured.Empty() {
+		if readings, err = survey.Evaluate(ctx, model, measured); err != nil {
+			return err
+		}
+	}
+	if _, err := reports.Write(a, o.out, reports.Options{Survey: readings, Force: o.force, Context: ctx}); err != nil {
 		return err
 	}
 	if o.json {
@@ -91,6 +102,26 @@ func runAssess(ctx context.Context, std streams, o assessOptions, args []string)
 		err = errFound
 	}
 	return err
+}
+
+// loadSurvey reads the site and what was measured there, and tells its warnings.
+func (o *assessOptions) loadSurvey(std streams, name string) (*exposure.Site, *survey.Survey, error) {
+	so, err := o.options()
+	if err != nil {
+		return nil, nil, err
+	}
+	var site *exposure.Site
+	var measured *survey.Survey
+	if o.demo {
+		site, measured, err = sitefile.LoadSurveyFS(demo.FS, so)
+	} else {
+		site, measured, err = sitefile.LoadSurvey(name, so)
+	}
+	if err != nil {
+		return nil, nil, readError(name, err)
+	}
+	o.warn(std, site.Inputs.Warnings)
+	return site, measured, nil
 }
 
 // vacant refuses, before the work is done, a folder that already holds a report.

@@ -53,7 +53,7 @@ func runReadings(ctx context.Context, std streams, o readingsOptions, path strin
 		return usageError{"readings", path, "has no readings; fill in the tables readings and instruments, or write a sheet for the site with: standclear readings sheet " + quoted(path) + " -o sheet.xlsx"}
 	}
 	o.warn(std, site.Inputs.Warnings)
-	model, err := exposure.New(site, exposure.Options{})
+	model, err := compile(site, path, nil)
 	if err != nil {
 		return err
 	}

@@ -9,7 +9,6 @@ import (
 
 	"github.com/spf13/cobra"
 
-	"example.org/standclear/exposure"
 	"example.org/standclear/exposure/sitefile"
 	"example.org/standclear/exposure/survey"
 )
@@ -52,7 +51,7 @@ func runReadingsSheet(ctx context.Context, std streams, o sheetOptions, path str
 		return readError(path, err)
 	}
 	o.warn(std, site.Inputs.Warnings)
-	model, err := exposure.New(site, exposure.Options{})
+	model, err := compile(site, path, nil)
 	if err != nil {
 		return err
 	}

@@ -3,7 +3,6 @@ package main
 import (
 	"errors"
 	"fmt"
-	"io/fs"
 	"os"
 	"slices"
 	"strings"
@@ -58,20 +57,6 @@ func (f *siteFlags) load(std streams, path string) (*exposure.Site, error) {
 	site, err := sitefile.Load(path, o)
 	if err != nil {
 		return nil, readError(path, err)
-	}
-	f.warn(std, site.Inputs.Warnings)
-	return site, nil
-}
-
-// loadFS is load for the embedded demo site.
-func (f *siteFlags) loadFS(std streams, fsys fs.FS) (*exposure.Site, error) {
-	o, err := f.options()
-	if err != nil {
-		return nil, err
-	}
-	site, err := sitefile.LoadFS(fsys, o)
-	if err != nil {
-		return nil, readError("demo", err)
 	}
 	f.warn(std, site.Inputs.Warnings)
 	return site, nil
