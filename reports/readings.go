@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"slices"
 
 	"example.org/standclear/exposure"
 	"example.org/standclear/exposure/survey"
@@ -19,6 +20,12 @@ func readingsJSON(w io.Writer, r *survey.Result) error {
 	out.SetIndent("", "  ")
 	return out.Encode(r)
 }
+
+// readingsCaution is at the foot of a figure of readings.
+const readingsCaution = "Readings under the conditions of the day, for a licensed assessor to check. No permit to enter."
+
+// leastDay is how long in s a log lasts at least to be drawn by hour of the day.
+const leastDay = 3 * 3600
 
 // drawReadings makes the figures of a survey: measured against predicted field,
 // and for each log its course and its mean by hour of the day.
@@ -53,7 +60,7 @@ func drawReadings(ctx context.Context, a *exposure.Assessment, r *survey.Result)
 		if err := add(fmt.Sprintf("log-%02d-%s", i+1, slug(s.Series)), f, err); err != nil {
 			return nil, err
 		}
-		if len(s.Daily) > 1 {
+		if s.DurationS >= leastDay {
 			f, err := figure.Series(dailyCurve(s))
 			if err := add(fmt.Sprintf("day-%02d-%s", i+1, slug(s.Series)), f, err); err != nil {
 				return nil, err
@@ -66,7 +73,8 @@ func drawReadings(ctx context.Context, a *exposure.Assessment, r *survey.Result)
 // scatter gathers what was measured and predicted; a group stands for its
 // readings.
 func scatter(a *exposure.Assessment, r *survey.Result) (figure.ScatterData, bool) {
-	d := figure.ScatterData{Title: "Readings and prediction", Note: oneLine(a.SiteName), Caution: footerCaution}
+	d := figure.ScatterData{Title: "Readings and prediction", Note: oneLine(a.SiteName), Caution: readingsCaution}
+	var widths []float64
 	add := func(label string, c survey.Comparison, field, expanded *float64, below bool) {
 		if field == nil || c.PredictedVPerM == nil || c.DifferenceDB == nil {
 			return
@@ -75,7 +83,7 @@ func scatter(a *exposure.Assessment, r *survey.Result) (figure.ScatterData, bool
 		if expanded != nil {
 			p.ExpandedUncertaintyDB = *expanded
 		}
-		d.BandDB = math.Max(d.BandDB, c.CombinedDB)
+		widths = append(widths, c.CombinedDB)
 		d.Points = append(d.Points, p)
 	}
 	for _, x := range r.Readings {
@@ -89,6 +97,10 @@ func scatter(a *exposure.Assessment, r *survey.Result) (figure.ScatterData, bool
 	for _, x := range r.Series {
 		add(x.Series, x.Comparison, x.FieldVPerM, x.ExpandedDB, false)
 	}
+	if len(widths) > 0 {
+		slices.Sort(widths)
+		d.BandDB = widths[len(widths)/2] // the marks go by each reading's own
+	}
 	return d, len(d.Points) > 0
 }
 
@@ -97,7 +109,7 @@ func logCurve(s *survey.SeriesResult) figure.SeriesData {
 	d := figure.SeriesData{
 		Title: "Log " + oneLine(s.Series) + " at " + oneLine(s.Place), Note: "from " + s.First + " to " + s.Last,
 		AveragingS: s.AveragingS, LimitVPerM: s.LevelVPerM, LimitLabel: "lowest level of the limits supplied over the band",
-		LargestTimeS: float64(s.LargestEndNS-s.FirstNS) / 1e9, LargestVPerM: s.Largest, Caution: footerCaution,
+		LargestTimeS: float64(s.LargestEndNS-s.FirstNS) / 1e9, LargestVPerM: s.Largest, Caution: readingsCaution,
 	}
 	at := func(ns int64) float64 { return float64(ns-s.FirstNS) / 1e9 }
 	for _, c := range s.Curve {
@@ -118,7 +130,7 @@ func logCurve(s *survey.SeriesResult) figure.SeriesData {
 
 // dailyCurve is the mean over each hour of the day, drawn as steps.
 func dailyCurve(s *survey.SeriesResult) figure.SeriesData {
-	d := figure.SeriesData{Title: "Log " + oneLine(s.Series) + " by hour of the day", Note: "root-mean-square over each hour, by the log's own clock; time from midnight", Caution: footerCaution}
+	d := figure.SeriesData{Title: "Log " + oneLine(s.Series) + " by hour of the day", Note: "root-mean-square over each hour, by the log's own clock; time from midnight", Caution: readingsCaution}
 	for _, h := range s.Daily {
 		d.TimeS = append(d.TimeS, float64(h.Hour)*3600, float64(h.Hour+1)*3600)
 		d.FieldVPerM = append(d.FieldVPerM, h.FieldVPerM, h.FieldVPerM)

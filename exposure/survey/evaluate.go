@@ -288,9 +288,11 @@ func (s *session) log(ctx context.Context, log *Series) (SeriesResult, *part, er
 		antennas: r.Antennas, expanded: s.budgets[r.Instrument], scale: r.Scale.Factor(r.Ports), heights: []exposure.Place{r.At}}
 	res := SeriesResult{Series: log.Name, Place: r.At.ID, FromHz: c.lo, ToHz: c.hi, ExpandedDB: p.expanded, ScaleFactor: p.scale,
 		ScaleFormula: r.Scale.Formula(r.Ports), Remarks: slices.Clone(c.remarks)}
-	averaging, level := s.averaging(p)
-	res.LevelVPerM = level
-	run := NewRunning(averaging, log.ZoneS)
+	times := s.averagings(p)
+	runs := make([]*Running, len(times))
+	for i, t := range times {
+		runs[i] = NewRunning(t, log.ZoneS)
+	}
 	gain := c.field(1)
 	floor, overload := in.FloorVPerM, math.Inf(1)
 	if in.OverloadVPerM > 0 {
@@ -321,15 +323,23 @@ func (s *session) log(ctx context.Context, log *Series) (SeriesResult, *part, er
 				res.Overloaded++
 			}
 		}
-		if !run.Add(ns, e2) {
-			backward++
+		for i, run := range runs {
+			if !run.Add(ns, e2) && i == 0 {
+				backward++
+			}
 		}
 		return nil
 	})
 	if err != nil {
 		return res, p, err
 	}
-	res.RunningMean = run.Mean()
+	means := make([]RunningMean, len(runs))
+	for i, run := range runs {
+		means[i] = run.Mean()
+	}
+	governing := s.governing(p, times, means)
+	res.RunningMean = means[governing]
+	res.LevelVPerM = s.levelOver(p, times[governing])
 	m := &res.RunningMean
 	if m.Samples == 0 {
 		p.reasons = append(p.reasons, "the log has no sample")
@@ -341,8 +351,15 @@ func (s *session) log(ctx context.Context, log *Series) (SeriesResult, *part, er
 	if res.Overloaded > 0 {
 		p.reasons = append(p.reasons, fmt.Sprintf("%d samples lie beyond what %s can read: the field may be higher", res.Overloaded, in.ID))
 	}
-	if m.Short {
-		p.reasons = append(p.reasons, fmt.Sprintf("the log lasts %.4g min, less than the averaging time of %.4g min", m.DurationS/60, averaging/60))
+	for i, mean := range means {
+		if mean.Short {
+			p.reasons = append(p.reasons, fmt.Sprintf("the log lasts %.4g min, less than the averaging time of %.4g min", mean.DurationS/60, times[i]/60))
+		}
+	}
+	for i, mean := range means {
+		if i != governing && mean.Samples > 0 && !shaped {
+			res.Remarks = append(res.Remarks, fmt.Sprintf("%.4g V/m is the largest mean over %.4g min", mean.Largest*p.scale, times[i]/60))
+		}
 	}
 	res.Remarks = append(res.Remarks, m.remarks()...)
 	if said, ok := log.Samples.(interface{ Remarks() []string }); ok {
@@ -385,30 +402,72 @@ func (m *RunningMean) remarks() []string {
 	return out
 }
 
-// averaging returns the averaging time in s for a log, the shortest of the
-// levels it is held against, and the lowest level of E (0 = none).
-func (s *session) averaging(p *part) (seconds, level float64) {
-	classes := []string{p.place.Class}
-	if p.quantity == ShareOfLimit {
-		classes = []string{p.shareOf}
-	} else if p.place.Class == "" {
-		classes = s.site.Limits.Classes()
+// classesOf returns the classes that a part is held against.
+func (s *session) classesOf(p *part) []string {
+	switch {
+	case p.quantity == ShareOfLimit:
+		return []string{p.shareOf}
+	case p.place.Class == "":
+		return s.site.Limits.Classes()
 	}
-	found := false
-	for _, class := range classes {
+	return []string{p.place.Class}
+}
+
+// averagings returns the averaging times in s of the levels that a log is held
+// against, shortest first; 0 alone where there is none.
+func (s *session) averagings(p *part) []float64 {
+	var times []float64
+	for _, class := range s.classesOf(p) {
 		for _, a := range s.levelsFor(p, class).at {
-			if a.None && a.E == 0 && a.H == 0 && a.S == 0 && a.B == 0 {
+			if !slices.Contains(times, a.AverageS) && (a.E > 0 || a.H > 0 || a.B > 0 || a.S > 0) {
+				times = append(times, a.AverageS)
+			}
+		}
+	}
+	if len(times) == 0 {
+		return []float64{0}
+	}
+	slices.Sort(times)
+	return times
+}
+
+// governing sets the field of each averaging time, each level being compared
+// with the mean over its own, and returns which of them governs. A shaped
+// reading names no levels: the shortest time holds, whose mean is the largest.
+func (s *session) governing(p *part, times []float64, means []RunningMean) int {
+	if p.quantity == ShareOfLimit {
+		return 0
+	}
+	p.byAverage = map[float64]float64{}
+	for i, t := range times {
+		p.byAverage[t] = means[i].Largest * p.scale
+	}
+	best, most := 0, -1.0
+	for _, class := range s.classesOf(p) {
+		for _, a := range s.levelsFor(p, class).at {
+			i := slices.Index(times, a.AverageS)
+			if i < 0 {
 				continue
 			}
-			if !found || a.AverageS < seconds {
-				seconds, found = a.AverageS, true
+			if r := a.Ratio(p.fieldOf(p.byAverage[a.AverageS])); r > most {
+				best, most = i, r
 			}
+		}
+	}
+	return best
+}
+
+// levelOver returns the lowest level of E, or of S as E of a plane wave, that is
+// averaged over a time; 0 = none.
+func (s *session) levelOver(p *part, averagingS float64) (level float64) {
+	for _, class := range s.classesOf(p) {
+		for _, a := range s.levelsFor(p, class).at {
 			for _, e := range []float64{a.E, exposure.EFromS(a.S)} {
-				if e > 0 && (level == 0 || e < level) {
+				if a.AverageS == averagingS && e > 0 && (level == 0 || e < level) {
 					level = e
 				}
 			}
 		}
 	}
-	return seconds, level
+	return level
 }

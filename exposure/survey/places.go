@@ -221,6 +221,7 @@ func (s *session) sortOut(bundle []*part, class string) (narrow []*part, rest *p
 func (s *session) beyond(wide *part, narrow []*part) *part {
 	left := *wide
 	left.kind, left.whole, left.id = "rest", wide, "rest of "+wide.id
+	left.byAverage = nil
 	e2, share := wide.e*wide.e, wide.share
 	for _, p := range narrow {
 		inside := p.lo >= wide.lo*(1-edge) && p.hi <= wide.hi*(1+edge)

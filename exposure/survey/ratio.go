@@ -34,8 +34,10 @@ type part struct {
 	reasons  []string
 	heights  []exposure.Place // the points that the figure is of
 	result   *Judgement
-	whole    *part // of a rest: the reading it is left of
-	compare  *Comparison
+	// byAverage is the largest running mean of a log by averaging time in s.
+	byAverage map[float64]float64
+	whole     *part // of a rest: the reading it is left of
+	compare   *Comparison
 }
 
 // levels are the levels of one class that a part is held against.
@@ -165,6 +167,9 @@ func (p *part) ratio(l levels, factor float64, forMean bool) (float64, string) {
 		e := p.e
 		if !forMean && (a.OverBody != limits.BodyMean || a.Group.Region == limits.Local || a.Group.Effect == limits.Stimulation) {
 			e = max(e, p.largestE)
+		}
+		if own, ok := p.byAverage[a.AverageS]; ok {
+			e = own // each level is compared with the mean over its own time
 		}
 		if r := a.Ratio(p.fieldOf(e * factor)); r > best || governed == "" {
 			best, governed = r, a.Group.String()
