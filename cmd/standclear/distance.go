@@ -47,16 +47,11 @@ func runDistance(ctx context.Context, std streams, o distanceOptions, path strin
 		}
 		q.Direction = d
 	}
-	if o.coverage != "" {
-		p, err := positive("--coverage", o.coverage, "95%", units.Share)
-		if err != nil {
-			return err
-		}
-		if p <= 0.5 || p >= 1 {
-			return usageError{"--coverage", o.coverage, "is not between 50% and 100%; write one such as 95%"}
-		}
-		q.Coverage = &exposure.Coverage{Probability: p, Seed: o.seed}
+	coverage, err := coverageOf(o.coverage, o.seed)
+	if err != nil {
+		return err
 	}
+	q.Coverage = coverage
 	if err := chosen("--of", "a choice", o.of, []string{"rows", "housings", "all"}); err != nil {
 		return err
 	}
@@ -88,6 +83,21 @@ func runDistance(ctx context.Context, std streams, o distanceOptions, path strin
 		return printJSON(std, answer("distances", distances, site, model))
 	}
 	return printDistances(std, distances, q.Direction != nil)
+}
+
+// coverageOf reads --coverage; nil where it is left out.
+func coverageOf(text string, seed uint64) (*exposure.Coverage, error) {
+	if text == "" {
+		return nil, nil
+	}
+	p, err := positive("--coverage", text, "95%", units.Share)
+	if err != nil {
+		return nil, err
+	}
+	if p <= 0.5 || p >= 1 {
+		return nil, usageError{"--coverage", text, "is not between 50% and 100%; write one such as 95%"}
+	}
+	return &exposure.Coverage{Probability: p, Seed: seed}, nil
 }
 
 func printDistances(std streams, distances []exposure.Distance, ray bool) error {

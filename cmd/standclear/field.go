@@ -4,6 +4,7 @@ import (
 	"context"
 	"fmt"
 	"io"
+	"slices"
 	"sort"
 
 	"github.com/spf13/cobra"
@@ -18,6 +19,7 @@ type fieldOptions struct {
 	points  string
 	classes []string
 	strict  bool
+	assumed bool
 }
 
 func newField(std streams) *cobra.Command {
@@ -34,6 +36,7 @@ func newField(std streams) *cobra.Command {
 	c.Flags().StringArrayVar(&o.at, "at", nil, "point `X,Y,Z` in site metres (may be given more than once)")
 	c.Flags().StringVar(&o.points, "points", "", "table `FILE` of points, with the columns of places")
 	classFlag(c, &o.classes)
+	c.Flags().BoolVar(&o.assumed, "assumptions", false, "tell what each assumption is worth in dB, beside a conservative and a best-estimate figure")
 	strictFlag(c, &o.strict)
 	return c
 }
@@ -85,10 +88,26 @@ func runField(ctx context.Context, std streams, o fieldOptions, path string) err
 	}
 	o.notice(std, model.Notices())
 	points = onlyClasses(points, o.classes)
+	var sets []exposure.AssumptionSet
+	if o.assumed {
+		all, err := model.Assumptions(ctx, places, nil)
+		if err != nil {
+			return err
+		}
+		for _, s := range all {
+			if len(o.classes) == 0 || slices.Contains(o.classes, s.Class) {
+				sets = append(sets, s)
+			}
+		}
+	}
 	if o.json {
-		err = printJSON(std, answer("points", points, site, model))
-	} else {
-		err = printField(std, points)
+		a := answer("points", points, site, model)
+		if o.assumed {
+			a["assumptions"] = sets
+		}
+		err = printJSON(std, a)
+	} else if err = printField(std, points); err == nil && o.assumed {
+		err = printAssumptions(std.out, sets)
 	}
 	if err == nil && o.strict && anyPointFound(points, len(o.classes) > 0) {
 		err = errFound
@@ -261,4 +280,40 @@ func partRatio(c exposure.Contribution, class string) string {
 		}
 	}
 	return string(exposure.NotAssessed)
+}
+
+// printAssumptions prints what each assumption is worth at each point.
+func printAssumptions(w io.Writer, sets []exposure.AssumptionSet) error {
+	if len(sets) == 0 {
+		return nil
+	}
+	fmt.Fprintln(w, "\nWhat each assumption is worth: the change in dB of the ratio where it alone is switched to another choice")
+	header := []string{"point", "class", ">ratio", ">conservative", ">best estimate"}
+	for i := range sets[0].Parts {
+		header = append(header, fmt.Sprintf(">(%d)", i+1))
+	}
+	t := newTable(header...)
+	for _, s := range sets {
+		row := []string{s.Place, s.Class, ratio(s.Ratio), ratio(s.Conservative.Ratio), ratio(s.BestEstimate.Ratio)}
+		for _, p := range s.Parts {
+			row = append(row, change(float64(p.WorthDB)))
+		}
+		t.add(row...)
+	}
+	if err := t.print(w); err != nil {
+		return err
+	}
+	for i, p := range sets[0].Parts {
+		fmt.Fprintf(w, "(%d) %s: %s\n", i+1, p.Assumption, p.Choice)
+	}
+	_, err := fmt.Fprintln(w, "Conservative: field factor 2, full power all the time, larger loss of two cuts. Best estimate: direct ray alone, no side-lobe floor, power as stated.")
+	return err
+}
+
+// change prints a change to a tenth of a decibel, none as 0.0.
+func change(db float64) string {
+	if text := fmt.Sprintf("%+.1f", db); text != "-0.0" && text != "+0.0" {
+		return text
+	}
+	return "0.0"
 }

@@ -69,17 +69,23 @@ func printAbout(w io.Writer, a aboutTable) {
 }
 
 func newLimitsShow(std streams) *cobra.Command {
-	var asJSON bool
+	var asJSON, force bool
+	var draw string
 	c := &cobra.Command{
 		Use:   "show FILE",
 		Short: "Show a limit table as it was read, with who stands behind it.",
 		Example: `  standclear limits show mysite/limits.csv
-  standclear limits show mysite/limits.csv --json`,
+  standclear limits show mysite/limits.csv --figure levels.svg`,
 		Args: arguments(1, 1, "FILE"),
 		RunE: func(_ *cobra.Command, args []string) error {
 			f, err := readLimits(args[0])
 			if err != nil {
 				return err
+			}
+			if draw != "" {
+				if err := drawLimits(f, draw, force); err != nil {
+					return err
+				}
 			}
 			r := f.shown()
 			if asJSON {
@@ -89,6 +95,8 @@ func newLimitsShow(std streams) *cobra.Command {
 		},
 	}
 	jsonFlag(c, &asJSON)
+	c.Flags().StringVar(&draw, "figure", "", "draw the levels against frequency to `FILE`.svg or FILE.png")
+	c.Flags().BoolVar(&force, "force", false, "replace a figure that is already there")
 	return c
 }
 

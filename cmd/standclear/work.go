@@ -149,7 +149,7 @@ func runWork(ctx context.Context, std streams, o workOptions, path string) error
 	if err := o.where(site, &q); err != nil {
 		return err
 	}
-	model, err := exposure.New(site, exposure.Options{})
+	model, err := compile(site, path, nil)
 	if err != nil {
 		return err
 	}
