@@ -74,6 +74,10 @@ func newMadeSite(seed uint64) *madeSite {
 	if s.chance(0.3) {
 		s.site.Ground = Ground{Method: GroundFactor, Factor: s.between(1, 2)}
 	}
+	if seed >= nearSeeds && s.chance(0.4) {
+		s.site.Ground = Ground{Method: GroundFresnel, Permittivity: s.between(3, 30), Conductivity: s.between(0, 0.1), Z: f.Z - s.between(2, 6)}
+		f.GroundFactor = 0
+	}
 	s.site.Limits = s.table()
 	n := 1 + s.r.IntN(8)
 	for i := 0; i < n; i++ {
