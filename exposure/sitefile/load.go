@@ -110,6 +110,8 @@ type loader struct {
 	patterns map[patternKey]*patternFile
 	built    map[builtKey]antenna.Pattern
 	survey   survey.Survey
+
+	waypoints []waypoint
 }
 
 func newLoader(fsys fs.FS, o Options) *loader {
@@ -202,7 +204,7 @@ func (l *loader) folder() {
 		return
 	}
 	byTable := map[string]string{}
-	var workbooks []string
+	var workbooks, gpx []string
 	for _, e := range entries {
 		ext := strings.ToLower(path.Ext(e.Name()))
 		stem := strings.Join(strings.Fields(strings.ToLower(strings.TrimSuffix(e.Name(), path.Ext(e.Name())))), " ")
@@ -210,6 +212,8 @@ func (l *loader) folder() {
 		case e.IsDir() || strings.HasPrefix(e.Name(), "."):
 		case ext == ".xlsx" && !strings.HasPrefix(e.Name(), "~"):
 			workbooks = append(workbooks, e.Name())
+		case ext == ".gpx":
+			gpx = append(gpx, e.Name())
 		case ext != ".csv":
 		case tableSchema(stem) == nil:
 			if near := units.NearName(stem, tableNames()); near != "" {
@@ -224,6 +228,14 @@ func (l *loader) folder() {
 	if byTable["antennas"] == "" && byTable["site"] == "" && len(workbooks) > 0 {
 		l.fatal = Faults{{File: "antennas.csv", Message: fmt.Sprintf("the folder has no table antennas; to read the workbook in it, give %s by name", workbooks[0])}}
 		return
+	}
+	for _, name := range gpx {
+		data, err := fs.ReadFile(l.fsys, name)
+		if err != nil {
+			l.fatal = err
+			return
+		}
+		l.gpx(name, data)
 	}
 	for _, t := range schema {
 		name := byTable[t.Name]
@@ -441,6 +453,7 @@ func (l *loader) site() (*exposure.Site, error) {
 	s.Operators = l.operators()
 	s.Surfaces = l.surfaceTable()
 	s.Places = l.places()
+	s.Places = append(s.Places, l.waypointPlaces(s.Places)...)
 	s.Sources = l.antennas()
 	l.surveyTables(s)
 	s.Scenarios = l.scenarios(raw)

@@ -3,9 +3,11 @@ package sitefile
 import (
 	"fmt"
 	"io"
+	"math"
 	"slices"
 	"strconv"
 
+	"example.org/standclear/exposure"
 	"example.org/standclear/exposure/survey"
 	"example.org/standclear/exposure/units"
 )
@@ -19,19 +21,10 @@ func WriteSheet(w io.Writer, name string, o Options, planned []survey.Planned) e
 	if err != nil {
 		return err
 	}
-	if l.fatal == nil && o.LimitsFile != "" {
-		l.grids = slices.DeleteFunc(l.grids, func(g *grid) bool {
-			return g.table == "limits" || g.table == "limits about" || g.table == "limits spots"
-		})
-		l.limitsFile(o.LimitsFile)
+	site, err := l.site()
+	if err != nil {
+		return err
 	}
-	if l.fatal != nil {
-		return l.fatal
-	}
-	if len(l.faults) > 0 {
-		return l.faults
-	}
-	l.bindAll() // straightens an export
 	has := func(table string) bool {
 		return slices.ContainsFunc(l.grids, func(g *grid) bool { return g.table == table })
 	}
@@ -39,13 +32,16 @@ func WriteSheet(w io.Writer, name string, o Options, planned []survey.Planned) e
 	for _, t := range schema {
 		for _, g := range l.grids {
 			switch {
-			case g.table != t.Name || t.Name == "readings" || t.Name == "columns":
+			case g.table != t.Name || t.Name == "readings" || t.Name == "columns" || t.Name == "places":
 			default:
 				plans = append(plans, gridPlan(t, g))
 				if t.Name == limitsTable.Name && !has("limits about") && !has("limits spots") {
 					plans = append(plans, limitsPlans(g)...)
 				}
 			}
+		}
+		if t.Name == "places" {
+			plans = append(plans, placesPlan(site))
 		}
 		if t.Name == "readings" {
 			plans = append(plans, l.sheetPlan(planned))
@@ -56,6 +52,48 @@ func WriteSheet(w io.Writer, name string, o Options, planned []survey.Planned) e
 	}
 	return writeWorkbook(w, plans)
 }
+
+// placesPlan lays out every place of a site, waypoints among them.
+func placesPlan(site *exposure.Site) sheetPlan {
+	p := fillInPlan(placesTable)
+	p.rows = nil
+	for _, x := range site.Places {
+		row := make([]string, len(p.columns))
+		for i, c := range p.columns {
+			column, _ := placesTable.Column(c.name)
+			switch c.name {
+			case "id":
+				row[i] = x.ID
+			case "x":
+				row[i] = numberIn(column, x.At.X)
+			case "y":
+				row[i] = numberIn(column, x.At.Y)
+			case "z":
+				if x.On == "" {
+					row[i] = numberIn(column, x.At.Z)
+				}
+			case "on":
+				row[i] = x.On
+			case "from":
+				row[i] = numberIn(column, x.From)
+			case "to":
+				row[i] = numberIn(column, x.To)
+			case "class":
+				row[i] = x.Class
+			case "wall loss":
+				row[i] = numberIn(column, wallLossDB(x.WallLoss))
+			case "note":
+				row[i] = x.Note
+			}
+		}
+		p.rows = append(p.rows, rowPlan{cells: row})
+	}
+	return p
+}
+
+// wallLossDB returns the loss in dB of a share of power, without the last bits
+// that a conversion leaves.
+func wallLossDB(share float64) float64 { return math.Abs(math.Round(-1e10*math.Log10(share)) / 1e9) }
 
 // sheetColumns are those of the readings sheet, in the order in which they are
 // filled in on site; what was measured before may add others.
