@@ -32,8 +32,10 @@ type point struct {
 
 // GeoJSON returns the keep-out lines, inner polygons, antennas and places as a
 // GeoJSON feature collection: in site metres, or in WGS 84 longitude and
-// latitude (RFC 7946) where the site has a position. Vertical sections have no
-// place on a map and are left out.
+// latitude (RFC 7946) where the site has a position. The lines of a vertical
+// section lie in its plane: in site metres their coordinates are the distance
+// along the section and the height above the datum, in WGS 84 longitude,
+// latitude and height, so that they stand upright where they are.
 func GeoJSON(a *exposure.Assessment, wgs84 bool) ([]byte, error) {
 	to := func(x, y, z float64) [2]float64 { return [2]float64{x, y} }
 	frame := "site metres: x east or along the site's own grid, y north, not longitude and latitude"
@@ -69,6 +71,28 @@ func GeoJSON(a *exposure.Assessment, wgs84 bool) ([]byte, error) {
 				"body_from_m": z.FromM, "body_to_m": z.ToM, "share": z.Share, "level": z.Level, "resolution_m": z.ResolutionM,
 				"covered": z.Covered, "verdict": verdictWords(zoneVerdict(z)), "reason": z.Reason,
 			})
+		}
+	}
+	for _, c := range cuts(a) {
+		for _, z := range c.zones {
+			for _, part := range []struct {
+				kind  string
+				area  float64
+				shape exposure.MultiPolygon
+			}{{"section keep-out", z.OuterAreaM2, z.Outer}, {"section certainly above", z.InnerAreaM2, z.Inner}} {
+				var geometry any = polygons(part.shape, 0, func(x, y, _ float64) [2]float64 { return [2]float64{x, y} })
+				in := "distance along the section from its start, and height above the site datum, in metres"
+				if wgs84 {
+					geometry = upright(part.shape, c.section, a.Site.About)
+					in = "WGS 84 longitude and latitude in degrees, and height above the site datum in metres"
+				}
+				add(geometry, map[string]any{
+					"kind": part.kind, "through": z.Through, "class": z.Class, "area_m2": part.area, "coordinates_in": in,
+					"x1_m": c.section.X1M, "y1_m": c.section.Y1M, "x2_m": c.section.X2M, "y2_m": c.section.Y2M,
+					"from_z_m": c.section.FromZM, "to_z_m": c.section.ToZM, "share": z.Share, "level": z.Level, "resolution_m": z.ResolutionM,
+					"covered": z.Covered, "verdict": verdictWords(zoneVerdict(z)), "reason": z.Reason,
+				})
+			}
 		}
 	}
 	if a.Site != nil {
@@ -109,6 +133,31 @@ func GeoJSON(a *exposure.Assessment, wgs84 bool) ([]byte, error) {
 	}
 	out.WriteString("\n]}\n")
 	return out.Bytes(), nil
+}
+
+// solid is a GeoJSON multipolygon with heights.
+type solid struct {
+	Type        string           `json:"type"`
+	Coordinates [][][][3]float64 `json:"coordinates"`
+}
+
+// upright stands the rings of a section's plane where they are.
+func upright(m exposure.MultiPolygon, line exposure.Section, about exposure.About) solid {
+	out := solid{"MultiPolygon", [][][][3]float64{}}
+	for _, rings := range m {
+		var p [][][3]float64
+		for _, ring := range rings {
+			r := make([][3]float64, len(ring))
+			for i, v := range ring {
+				x, y := onLine(line, v[0])
+				lat, lon, _ := exposure.SiteToGeodetic(about, exposure.Point{X: x, Y: y, Z: v[1]})
+				r[i] = [3]float64{degrees(lon), degrees(lat), v[1]}
+			}
+			p = append(p, r)
+		}
+		out.Coordinates = append(out.Coordinates, p)
+	}
+	return out
 }
 
 // degrees drops digits beyond a hundredth of a millimetre on the ground.

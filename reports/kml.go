@@ -50,6 +50,31 @@ func KML(a *exposure.Assessment) ([]byte, error) {
 		))
 	}
 	document.Append(volumes)
+	if planes := cuts(a); len(planes) > 0 {
+		folder := kml.Folder(kml.Name("vertical sections"))
+		for _, c := range planes {
+			for _, z := range c.zones {
+				if len(z.Outer) == 0 {
+					continue
+				}
+				shape := kml.MultiGeometry()
+				for _, rings := range z.Outer {
+					shape.Append(standing(rings, c.section, at))
+				}
+				folder.Append(kml.Placemark(
+					kml.Name(oneLine(fmt.Sprintf("%s, class %s", cutName(z), z.Class))),
+					kml.Description(fmt.Sprintf("Keep-out line on the vertical plane from %.2f m to %.2f m above the datum; it encloses the model's boundary to within %s m. Verdict: %s.",
+						c.section.FromZM, c.section.ToZM, significant(z.ResolutionM, 2), verdictFull(zoneVerdict(z), z.Reason))),
+					kml.StyleURL("#keep-out"),
+					// Planes through every housing hide one another: they are
+					// switched on by hand, but for the one that was asked for.
+					kml.Visibility(z.Through == "" && z.Class == c.zones[0].Class),
+					shape,
+				))
+			}
+		}
+		document.Append(folder)
+	}
 	antennas := kml.Folder(kml.Name("antennas"))
 	for _, s := range a.Site.Sources {
 		antennas.Append(kml.Placemark(kml.Name(oneLine(s.ID)), kml.StyleURL("#antenna"),
@@ -70,6 +95,25 @@ func KML(a *exposure.Assessment) ([]byte, error) {
 	var out bytes.Buffer
 	err := kml.KML(document).WriteIndent(&out, "", " ")
 	return out.Bytes(), err
+}
+
+// standing returns a polygon of a section's plane, upright where it is.
+func standing(rings []exposure.Ring, line exposure.Section, at func(x, y, z float64) kml.Coordinate) kml.Element {
+	p := kml.Polygon(kml.AltitudeMode(kml.AltitudeModeRelativeToGround))
+	for i, ring := range rings {
+		var c []kml.Coordinate
+		for _, v := range ring {
+			x, y := onLine(line, v[0])
+			c = append(c, at(x, y, v[1]))
+		}
+		linear := kml.LinearRing(kml.Coordinates(c...))
+		if i == 0 {
+			p.Append(kml.OuterBoundaryIs(linear))
+		} else {
+			p.Append(kml.InnerBoundaryIs(linear))
+		}
+	}
+	return p
 }
 
 // walls returns floor, roof and walls of the volume over a polygon.

@@ -28,20 +28,25 @@ type picture struct {
 // table has every profile.
 const mostProfiles = 12
 
+// drawing is a figure to be drawn.
+type drawing struct {
+	name string
+	draw func() (*figure.Figure, error)
+}
+
 // draw makes the figures of an assessment: a plan of each surface, one more
-// with contour lines of the ratio where these were computed, and the ratio
-// against distance along the main beams.
+// with contour lines of the ratio where these were computed, each vertical
+// section, and the ratio against distance along the main beams.
 func draw(ctx context.Context, a *exposure.Assessment) ([]picture, error) {
-	type job struct {
-		name string
-		draw func() (*figure.Figure, error)
-	}
-	var jobs []job
+	var jobs []drawing
 	if a.Site != nil {
 		for i, s := range a.Site.Surfaces {
+			if !slices.ContainsFunc(a.Zones, func(z exposure.Zone) bool { return z.Section == nil && z.Surface == s.ID }) {
+				continue // not asked for
+			}
 			data := figure.PlanData{Site: a.Site, Surface: s.ID, Classes: a.Classes, Zones: a.Zones, Points: a.Points}
 			name := fmt.Sprintf("plan-%02d-%s", i+1, slug(s.ID))
-			jobs = append(jobs, job{name, func() (*figure.Figure, error) { return figure.Plan(data) }})
+			jobs = append(jobs, drawing{name, func() (*figure.Figure, error) { return figure.Plan(data) }})
 			for k := range a.Grids {
 				g := &a.Grids[k]
 				if g.Section != nil || g.Surface != s.ID || !reachesContour(a, g) {
@@ -55,18 +60,14 @@ func draw(ctx context.Context, a *exposure.Assessment) ([]picture, error) {
 					}
 				}
 				name := fmt.Sprintf("ratio-%02d-%s-%s", i+1, slug(s.ID), slug(g.Class))
-				jobs = append(jobs, job{name, func() (*figure.Figure, error) { return figure.Plan(data) }})
+				jobs = append(jobs, drawing{name, func() (*figure.Figure, error) { return figure.Plan(data) }})
 			}
 		}
 	}
-	sections := 0
-	for _, z := range a.Zones {
-		if z.Section == nil || a.Site == nil {
-			continue
+	if a.Site != nil {
+		for i, c := range cuts(a) {
+			jobs = append(jobs, c.drawing(a, i+1))
 		}
-		sections++
-		data := figure.SectionData{Site: a.Site, Section: *z.Section, Classes: a.Classes, Zones: []exposure.Zone{z}}
-		jobs = append(jobs, job{fmt.Sprintf("section-%02d-%s", sections, slug(z.Class)), func() (*figure.Figure, error) { return figure.Section(data) }})
 	}
 	for i, lines := range beams(a) {
 		data := figure.ProfileData{SiteName: a.SiteName, Lines: lines, Classes: a.Classes, Marks: a.Distances}
@@ -75,7 +76,7 @@ func draw(ctx context.Context, a *exposure.Assessment) ([]picture, error) {
 				data.Source = &a.Sources[k]
 			}
 		}
-		jobs = append(jobs, job{fmt.Sprintf("beam-%02d-%s", i+1, slug(lines[0].Antenna)), func() (*figure.Figure, error) { return figure.Profile(data) }})
+		jobs = append(jobs, drawing{fmt.Sprintf("beam-%02d-%s", i+1, slug(lines[0].Antenna)), func() (*figure.Figure, error) { return figure.Profile(data) }})
 	}
 
 	out := make([]picture, len(jobs))
@@ -97,13 +98,15 @@ func draw(ctx context.Context, a *exposure.Assessment) ([]picture, error) {
 	return out, group.Wait()
 }
 
+// lowestContour is the ratio of the lowest contour line.
+const lowestContour = 0.05
+
 // reachesContour reports whether the ratio on a surface reaches the lowest
 // contour line anywhere: below it a figure of contours is blank.
 func reachesContour(a *exposure.Assessment, g *exposure.RatioGrid) bool {
-	const lowest = 0.05
 	for _, z := range a.Zones {
 		if z.Surface == g.Surface && z.Class == g.Class && z.Section == nil {
-			return z.MaxRatioUpper >= lowest
+			return z.MaxRatioUpper >= lowestContour
 		}
 	}
 	return true

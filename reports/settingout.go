@@ -18,7 +18,8 @@ var settingOutHeader = []string{
 
 // SettingOut returns the corners of every keep-out line as CSV, measured from a
 // named corner of the surface's outline, so that a line can be marked on the
-// roof with a tape and a compass. A hole in a line is a line of its own.
+// roof with a tape and a compass. Those of a vertical section are measured from
+// the start of its line. A hole in a line is a line of its own.
 func SettingOut(a *exposure.Assessment) ([]byte, error) {
 	var out bytes.Buffer
 	w := csv.NewWriter(&out)
@@ -30,38 +31,58 @@ func SettingOut(a *exposure.Assessment) ([]byte, error) {
 		if s == nil || len(s.Outline) == 0 || len(s.Outline[0]) == 0 {
 			continue
 		}
-		corner := s.Outline[0][0]
-		name := cornerName(s)
-		sg, cg := math.Sincos(a.Site.About.GridBearingRad)
-		line := 0
-		for _, rings := range z.Outer {
-			for i, ring := range rings {
-				line++
-				kind := "keep-out line " + strconv.Itoa(line)
-				if i > 0 {
-					kind = "opening in it " + strconv.Itoa(line)
-				}
-				for k, v := range ring {
-					if k == len(ring)-1 && len(ring) > 1 && v == ring[0] {
-						break // a ring is closed by going back to vertex 1
-					}
-					dx, dy := v[0]-corner[0], v[1]-corner[1]
-					east, north := dx*cg+dy*sg, -dx*sg+dy*cg
-					bearing := math.Mod(math.Atan2(east, north)/degree+360, 360)
-					row := []string{
-						cellGuard(s.ID), cellGuard(z.Class), kind, strconv.Itoa(k + 1),
-						millimetres(v[0]), millimetres(v[1]), millimetres(s.Z), cellGuard(name),
-						millimetres(east), millimetres(north), millimetres(math.Hypot(dx, dy)), strconv.FormatFloat(bearing, 'f', 2, 64),
-					}
-					if err := w.Write(row); err != nil {
-						return nil, err
-					}
-				}
+		place := func(v [2]float64) (x, y, height float64) { return v[0], v[1], s.Z }
+		if err := setOut(w, a, z, s.ID, cornerName(s), s.Outline[0][0], place); err != nil {
+			return nil, err
+		}
+	}
+	for _, c := range cuts(a) {
+		start := fmt.Sprintf("start of the section, at x = %s, y = %s", millimetres(c.section.X1M), millimetres(c.section.Y1M))
+		place := func(v [2]float64) (x, y, height float64) {
+			x, y = onLine(c.section, v[0])
+			return x, y, v[1]
+		}
+		for _, z := range c.zones {
+			if err := setOut(w, a, z, cutName(z), start, [2]float64{c.section.X1M, c.section.Y1M}, place); err != nil {
+				return nil, err
 			}
 		}
 	}
 	w.Flush()
 	return out.Bytes(), w.Error()
+}
+
+// setOut writes the corners of one boundary's keep-out lines.
+func setOut(w *csv.Writer, a *exposure.Assessment, z exposure.Zone, of, cornerName string, corner [2]float64, place func([2]float64) (x, y, height float64)) error {
+	sg, cg := math.Sincos(a.Site.About.GridBearingRad)
+	line := 0
+	for _, rings := range z.Outer {
+		for i, ring := range rings {
+			line++
+			kind := "keep-out line " + strconv.Itoa(line)
+			if i > 0 {
+				kind = "opening in it " + strconv.Itoa(line)
+			}
+			for k, v := range ring {
+				if k == len(ring)-1 && len(ring) > 1 && v == ring[0] {
+					break // a ring is closed by going back to vertex 1
+				}
+				x, y, height := place(v)
+				dx, dy := x-corner[0], y-corner[1]
+				east, north := dx*cg+dy*sg, -dx*sg+dy*cg
+				bearing := math.Mod(math.Atan2(east, north)/degree+360, 360)
+				row := []string{
+					cellGuard(of), cellGuard(z.Class), kind, strconv.Itoa(k + 1),
+					millimetres(x), millimetres(y), millimetres(height), cellGuard(cornerName),
+					millimetres(east), millimetres(north), millimetres(math.Hypot(dx, dy)), strconv.FormatFloat(bearing, 'f', 2, 64),
+				}
+				if err := w.Write(row); err != nil {
+					return err
+				}
+			}
+		}
+	}
+	return nil
 }
 
 // millimetres prints a length to the millimetre; minus zero is zero.

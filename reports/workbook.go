@@ -21,6 +21,8 @@ const (
 	sheetDistances     = "Distances"
 	sheetByAntenna     = "Distances by antenna"
 	sheetBoundaries    = "Boundaries"
+	sheetSections      = "Vertical sections"
+	sheetChecks        = "Boundary points"
 	sheetFigures       = "Figures"
 	sheetPlaces        = "Places"
 	sheetContributions = "Contributions"
@@ -115,6 +117,12 @@ func newReport(b *book, pictures []picture) *report {
 		add(sheetCoverage, r.coverage)
 	}
 	add(sheetBoundaries, r.boundaries)
+	if len(cuts(b.a)) > 0 {
+		add(sheetSections, r.sections)
+	}
+	if len(b.a.BoundaryPoints) > 0 {
+		add(sheetChecks, r.boundaryPoints)
+	}
 	if len(pictures) > 0 {
 		add(sheetFigures, r.figures)
 	}

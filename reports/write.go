@@ -49,12 +49,17 @@ var ErrExists = errors.New("is there already; use --force to replace the report"
 // an earlier report that this one no longer has are removed with Force, unless
 // someone has edited them.
 func Write(a *exposure.Assessment, dir string, o Options) (files []string, err error) {
+	if a == nil || a.Site == nil {
+		return nil, errors.New("reports: an assessment needs its site")
+	}
+	return writeSet(dir, manifest, o, func(w *writer) error { return w.all(a, o.Survey, o.Force) })
+}
+
+// writeSet stages the files of a set and moves them into a folder, all or none.
+func writeSet(dir, manifest string, o Options, stageAll func(w *writer) error) (files []string, err error) {
 	ctx := o.Context
 	if ctx == nil {
 		ctx = context.Background()
-	}
-	if a == nil || a.Site == nil {
-		return nil, errors.New("reports: an assessment needs its site")
 	}
 	made, err := makeFolder(dir)
 	if err != nil {
@@ -72,8 +77,8 @@ func Write(a *exposure.Assessment, dir string, o Options) (files []string, err e
 		return nil, err
 	}
 	defer os.RemoveAll(stage)
-	w := &writer{ctx: ctx, dir: dir, stage: stage}
-	if err := w.all(a, o.Survey, o.Force); err != nil {
+	w := &writer{ctx: ctx, dir: dir, stage: stage, manifest: manifest, sums: map[string]string{}}
+	if err := stageAll(w); err != nil {
 		return nil, err
 	}
 	if err := w.install(o.Force); err != nil {
@@ -98,13 +103,13 @@ func makeFolder(dir string) (made []string, err error) {
 type writer struct {
 	ctx        context.Context
 	dir, stage string
+	manifest   string // name of the list of the set's files
 	files      []string
 	sums       map[string]string
 }
 
 // all stages every file of the report.
 func (w *writer) all(a *exposure.Assessment, measured *survey.Result, force bool) error {
-	w.sums = map[string]string{}
 	if !force {
 		// Before the work is done rather than after it.
 		for _, name := range []string{"report.xlsx", "results.json", manifest} {
@@ -152,15 +157,25 @@ func (w *writer) all(a *exposure.Assessment, measured *survey.Result, force bool
 		}
 	}
 	for _, p := range pictures {
-		if err := w.put(p.name+".svg", content(p.svg)); err != nil {
-			return err
-		}
-		if err := w.put(p.name+".png", content(p.png)); err != nil {
+		if err := w.putPicture(p, ""); err != nil {
 			return err
 		}
 	}
+	return w.list()
+}
+
+// putPicture stages a figure in both its forms.
+func (w *writer) putPicture(p picture, prefix string) error {
+	if err := w.put(prefix+p.name+".svg", content(p.svg)); err != nil {
+		return err
+	}
+	return w.put(prefix+p.name+".png", content(p.png))
+}
+
+// list stages the list of the files staged so far.
+func (w *writer) list() error {
 	names := slices.Sorted(slices.Values(w.files))
-	return w.put(manifest, func(out io.Writer) error {
+	return w.put(w.manifest, func(out io.Writer) error {
 		for _, name := range names {
 			if _, err := fmt.Fprintf(out, "%s  %s\n", w.sums[name], name); err != nil {
 				return err
@@ -280,7 +295,7 @@ func (w *writer) install(force bool) (err error) {
 // stale lists the files of an earlier report here that this one does not have
 // and that are as they were written.
 func (w *writer) stale() []string {
-	text, err := os.ReadFile(filepath.Join(w.dir, manifest))
+	text, err := os.ReadFile(filepath.Join(w.dir, w.manifest))
 	if err != nil {
 		return nil
 	}

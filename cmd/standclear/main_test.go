@@ -105,7 +105,7 @@ func TestHelpExamplesRun(t *testing.T) {
 		assert.GreaterOrEqual(t, len(lines), 2, "%s: two examples", c.CommandPath())
 		for _, line := range lines {
 			require.NoError(t, os.RemoveAll("mysite"))
-			for _, name := range []string{"newsite", "demo-report", "myreport"} {
+			for _, name := range []string{"newsite", "demo-report", "myreport", "mysection"} {
 				require.NoError(t, os.RemoveAll(name))
 			}
 			if !strings.Contains(line, "init --demo mysite") {

@@ -4,19 +4,23 @@ import (
 	"context"
 	"fmt"
 	"math"
+	"os"
+	"path/filepath"
 	"strings"
 
 	"github.com/spf13/cobra"
 
 	"example.org/standclear/exposure"
 	"example.org/standclear/exposure/units"
+	"example.org/standclear/reports"
 )
 
 type zoneOptions struct {
 	siteFlags
 	surfaces, classes                 []string
 	section, resolution, share, level string
-	strict                            bool
+	out                               string
+	strict, force                     bool
 }
 
 func newZone(std streams) *cobra.Command {
@@ -25,7 +29,7 @@ func newZone(std streams) *cobra.Command {
 		Use:   "zone SITE",
 		Short: "Draw the keep-out line of each class on each surface, or on a vertical section through the site.",
 		Example: `  standclear zone mysite
-  standclear zone mysite --section 12,-4.5,90 --resolution 0.2`,
+  standclear zone mysite --section 12,-4.5,90 --resolution 0.2 -o mysection`,
 		Args: arguments(1, 1, "SITE"),
 		RunE: func(cmd *cobra.Command, args []string) error { return runZone(cmd.Context(), std, o, args[0]) },
 	}
@@ -36,6 +40,8 @@ func newZone(std streams) *cobra.Command {
 	c.Flags().StringVar(&o.resolution, "resolution", "0.05", "width in `METRES` to which the line encloses the model's boundary")
 	c.Flags().StringVar(&o.share, "share", "1", "`SHARE` of the limit to draw the line at, such as 0.05 or 5%")
 	c.Flags().StringVar(&o.level, "level", "", "field `LEVEL` to draw the line at in place of the limits, such as 10V/m or 1W/m2")
+	c.Flags().StringVarP(&o.out, "output", "o", "", "folder `DIR` to write the figures, map files and setting-out list to; nothing is written where left out")
+	c.Flags().BoolVar(&o.force, "force", false, "replace files that an earlier zone wrote there")
 	strictFlag(c, &o.strict)
 	return c
 }
@@ -108,6 +114,9 @@ func runZone(ctx context.Context, std streams, o zoneOptions, path string) error
 	if err != nil {
 		return err
 	}
+	if err := o.vacant(); err != nil {
+		return err
+	}
 	site, err := o.load(std, path)
 	if err != nil {
 		return err
@@ -132,20 +141,50 @@ func runZone(ctx context.Context, std streams, o zoneOptions, path string) error
 		return err
 	}
 	zones, err := model.Zones(ctx, q)
+	var grids []exposure.RatioGrid
+	if err == nil && o.out != "" {
+		grids, err = model.Grids(ctx, zones)
+	}
 	end()
 	if err != nil {
 		return err
+	}
+	if o.out != "" {
+		a := &exposure.Assessment{Program: program, Site: site, SiteName: site.About.Name, Classes: model.Classes(), Zones: zones, Grids: grids}
+		if _, err := reports.WriteZones(a, o.out, reports.Options{Force: o.force, Context: ctx}); err != nil {
+			return err
+		}
 	}
 	o.notice(std, model.Notices())
 	if o.json {
 		err = printJSON(std, answer("zones", zones, site, model))
 	} else {
-		err = printZones(std, zones)
+		err = printZones(std, zones, o.out)
 	}
 	if err == nil && o.strict && anyZoneFound(site, zones) {
 		err = errFound
 	}
 	return err
+}
+
+// vacant refuses, before the work is done, what stands in the way of -o.
+func (o *zoneOptions) vacant() error {
+	if o.out == "" {
+		if o.force {
+			return usageError{"--force", "", "goes with -o DIR; leave it out, or name the folder to write to"}
+		}
+		return nil
+	}
+	info, err := os.Stat(o.out)
+	switch {
+	case err != nil:
+		return nil // writing will make it, or say why it cannot
+	case !info.IsDir():
+		return usageError{"-o", o.out, "is a file; give a folder, such as -o lines"}
+	case !o.force && exists(filepath.Join(o.out, "zone.geojson")):
+		return usageError{"-o", o.out, "already holds boundaries; add --force to replace them, or give another folder"}
+	}
+	return nil
 }
 
 // anyZoneFound reports whether a zone is above or not assessed for the class
@@ -163,7 +202,7 @@ func anyZoneFound(site *exposure.Site, zones []exposure.Zone) bool {
 	return false
 }
 
-func printZones(std streams, zones []exposure.Zone) error {
+func printZones(std streams, zones []exposure.Zone, out string) error {
 	t := newTable("surface", "class", "line at", ">kept out [m2]", ">certainly above [m2]", ">of [m2]", ">largest ratio", "at x,y,z [m]", "verdict")
 	for _, z := range zones {
 		where := ""
@@ -177,7 +216,11 @@ func printZones(std streams, zones []exposure.Zone) error {
 		return err
 	}
 	if len(zones) > 0 {
-		fmt.Fprintf(std.out, "\nThe keep-out line encloses the model's boundary to within %s m. The polygons are in --json; assess draws them.\n", plain(zones[0].ResolutionM))
+		where := "The polygons are in --json; -o DIR draws them."
+		if out != "" {
+			where = "Figures, map files and the setting-out list are in " + quoted(out) + "."
+		}
+		fmt.Fprintf(std.out, "\nThe keep-out line encloses the model's boundary to within %s m. %s\n", plain(zones[0].ResolutionM), where)
 	}
 	for _, z := range zones {
 		if z.Reason != "" {

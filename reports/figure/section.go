@@ -13,6 +13,7 @@ import (
 type SectionData struct {
 	Site    *exposure.Site
 	Section exposure.Section
+	Through string              // the housing it is laid through; "" = none
 	Classes []string            // their order settles the line and the hatching of each
 	Zones   []exposure.Zone     // those of other sections are passed over
 	Grid    *exposure.RatioGrid // in distance along the section and height; nil = none
@@ -43,6 +44,9 @@ func Section(d SectionData) (f *Figure, err error) {
 	title := "Vertical section"
 	if d.Site.About.Name != "" {
 		title = d.Site.About.Name + ": vertical section"
+	}
+	if d.Through != "" {
+		title += " through " + d.Through
 	}
 	if d.Grid != nil && d.Grid.Class != "" {
 		title += ", exposure ratio for " + d.Grid.Class
@@ -117,7 +121,7 @@ func (m *chart) cutSurfaces(sec exposure.Section, ux, uy, long float64) {
 				var seats []pt
 				for _, t := range []float64{0.5, 0.3, 0.7, 0.15, 0.85} {
 					c := between(a, b, t)
-					seats = append(seats, pt{c[0], c[1] - 7}, pt{c[0], c[1] - 16})
+					seats = append(seats, pt{c[0], c[1] - 7}, pt{c[0], c[1] - 16}, pt{c[0], c[1] + 7})
 				}
 				m.tags = append(m.tags, tag{text: shorten(o.ID, 28), face: contourFace, seats: seats})
 			}
