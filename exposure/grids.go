@@ -8,6 +8,9 @@ import (
 	"sync/atomic"
 )
 
+// leastContour is the lowest ratio that a contour line is drawn for.
+const leastContour = 0.05
+
 // gridSamples is the number of samples of a ratio grid along its longer side.
 const gridSamples = 64
 
@@ -20,8 +23,8 @@ func (m *Model) Grids(ctx context.Context, lists ...[]Zone) ([]RatioGrid, error)
 		for i := range zones {
 			z := &zones[i]
 			r := m.rule(z.Class)
-			if r == nil {
-				continue // a plain field level has no class to draw
+			if r == nil || z.MaxRatioUpper < leastContour {
+				continue // a plain field level has no class to draw, and a faint field no line
 			}
 			q := ZoneQuery{Section: z.Section}
 			if z.Section == nil {
@@ -121,7 +124,7 @@ func (e *evaluator) sample(x, y, from, to float64, mean bool) float64 {
 
 // sectionStep is how much coarser an assessment's sections are than its
 // surfaces: they are for looking at.
-const sectionStep = 2
+const sectionStep = 4
 
 // mostSections bounds the sections of an assessment: of very many housings only
 // those whose boundary reaches farthest have one.

@@ -40,6 +40,7 @@ func (h *peakHeap) Pop() any {
 // hang on it, and fewer still on a section, which is laid through antennas.
 const (
 	summitGap     = 2e-2
+	summitSettled = 0.1 // the gap that is enough where the share lies outside the bracket
 	summitEffort  = 200_000
 	summitDecided = 40_000
 	summitSection = 5_000
@@ -105,7 +106,11 @@ func (e *evaluator) largestOver(ctx context.Context, p *plane, most int) summit 
 		top := h[0]
 		s.upper = math.Max(top.upper, s.lower)
 		small := top.b.h.X <= p.step/2 && top.b.h.Z <= p.step/2
-		if top.upper <= s.lower*(1+summitGap) || small || effort > most {
+		gap := summitGap
+		if s.upper <= e.share || s.lower > e.share {
+			gap = summitSettled
+		}
+		if top.upper <= s.lower*(1+gap) || small || effort > most {
 			break
 		}
 		heap.Pop(&h)
