@@ -12,6 +12,9 @@ import (
 // at every point of it, its corners above all; and what is said of a box's reach
 // holds at every point.
 func TestBoundsEncloseRatios(t *testing.T) {
+	if testing.Short() {
+		t.Skip("dense sampling")
+	}
 	const boxes, inside = 120, 16
 	decided := 0
 	for _, first := range []uint64{1, nearSeeds} {

@@ -15,6 +15,9 @@ import (
 // Nothing above the limit lies beyond a distance: points are drawn on and past
 // the faces of the box of extents.
 func TestNothingAboveBeyondExtents(t *testing.T) {
+	if testing.Short() {
+		t.Skip("dense sampling")
+	}
 	const perDirection = 300
 	met, tight := 0, 0
 	for _, seed := range []uint64{1, 2, 3, 5, 8, 12, 19, 24, 29, 31, nearSeeds, nearSeeds + 2, nearSeeds + 3} {

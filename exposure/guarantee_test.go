@@ -199,18 +199,24 @@ func (s *madeSite) draw(f *Surface, z *Zone) (x, y float64) {
 }
 
 func TestNothingAboveOutsideNothingBelowInside(t *testing.T) {
-	n := points(t)
-	var all tally
-	for seed := uint64(1); seed <= madeSites; seed++ {
-		all.look(t, newMadeSite(seed), n)
+	n, sites := points(t), madeSites
+	if testing.Short() {
+		n, sites = n/5, 8
 	}
-	t.Logf("%d sites, %d points each: %d above the share, %d inside the inner line", madeSites, n, all.above, all.inside)
-	assert.Greater(t, all.above, n*madeSites/20, "too few points above to mean anything")
-	assert.Greater(t, all.inside, n*madeSites/20, "too few points inside to mean anything")
+	var all tally
+	for seed := 1; seed <= sites; seed++ {
+		all.look(t, newMadeSite(uint64(seed)), n)
+	}
+	t.Logf("%d sites, %d points each: %d above the share, %d inside the inner line", sites, n, all.above, all.inside)
+	assert.Greater(t, all.above, n*sites/20, "too few points above to mean anything")
+	assert.Greater(t, all.inside, n*sites/20, "too few points inside to mean anything")
 }
 
 // The same with the near-field methods among the sources.
 func TestNothingAboveOutsideNearField(t *testing.T) {
+	if testing.Short() {
+		t.Skip("dense sampling")
+	}
 	n := points(t) / 5
 	var all tally
 	for seed := uint64(nearSeeds); seed < nearSeeds+nearSites; seed++ {
@@ -273,6 +279,9 @@ func (c *tally) look(t *testing.T, s *madeSite, n int) {
 // What the rings of a zone must be: closed, turned the right way, simple, apart,
 // holes inside; and on the surface.
 func TestZonePolygonsAreValid(t *testing.T) {
+	if testing.Short() {
+		t.Skip("dense sampling")
+	}
 	corners := 0
 	for seed := uint64(1); seed <= madeSites+8; seed++ {
 		s := newMadeSite(seed)
@@ -318,7 +327,11 @@ func nearRings(rings []Ring, v [2]float64, reach float64) bool {
 
 // The same bytes whatever the number of workers.
 func TestSameBytesWithAnyNumberOfWorkers(t *testing.T) {
-	for seed := uint64(1); seed <= madeSites; seed += 3 {
+	step := uint64(3)
+	if testing.Short() {
+		step = 12
+	}
+	for seed := uint64(1); seed <= madeSites; seed += step {
 		s := newMadeSite(seed)
 		s.site.Places = []Place{{ID: "P", At: s.site.Sources[0].Position.Add(Point{X: 2, Y: 1}), To: 2, Class: "anyone"}}
 		var want []byte
@@ -344,6 +357,9 @@ func TestSameBytesWithAnyNumberOfWorkers(t *testing.T) {
 // the body volume the gap keeps the reactive regions, which are not assessed
 // however fine the cells.
 func TestGapIsInProportionToTheResolution(t *testing.T) {
+	if testing.Short() {
+		t.Skip("dense sampling")
+	}
 	coarse, fine := 0.0, 0.0
 	for seed := uint64(1); seed <= madeSites; seed++ {
 		s := newMadeSite(seed)

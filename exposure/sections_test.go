@@ -53,6 +53,9 @@ func TestSectionAgreesWithSurface(t *testing.T) {
 
 // On a section too nothing above lies outside, nothing below inside.
 func TestNothingAboveOutsideOnSections(t *testing.T) {
+	if testing.Short() {
+		t.Skip("dense sampling")
+	}
 	above := 0
 	for seed := uint64(1); seed <= 24; seed++ {
 		s := newMadeSite(seed)
@@ -93,6 +96,9 @@ func rings(m MultiPolygon) (all []Ring) {
 // The largest ratio of a surface lies between its two bounds, and the lower one
 // is met where it says.
 func TestLargestRatioHoldsAgainstSampling(t *testing.T) {
+	if testing.Short() {
+		t.Skip("dense sampling")
+	}
 	for seed := uint64(1); seed <= madeSites; seed += 2 {
 		s := newMadeSite(seed)
 		m := s.model(t, 2)
