@@ -64,7 +64,6 @@ func Evaluate(ctx context.Context, model *exposure.Model, survey *Survey) (*Resu
 type spot struct {
 	members []*Reading
 	c       *corrected
-	results []int // in Result.Readings
 }
 
 // readings corrects every reading, joins axes and heights, and judges.
