@@ -5,6 +5,9 @@ import (
 	"fmt"
 	"math"
 	"sort"
+	"strings"
+
+	"golang.org/x/sync/errgroup"
 )
 
 // Assess answers every question about the site at once: the field at each
@@ -18,33 +21,57 @@ func (m *Model) Assess(ctx context.Context, o AssessOptions) (*Assessment, error
 		Warnings: append([]Warning{}, m.site.Inputs.Warnings...), Notices: m.Notices(),
 		Inputs: m.site.Inputs.Files, Coverage: o.Coverage,
 	}
-	var err error
-	if a.Points, err = m.Field(ctx, m.site.Places); err != nil {
-		return nil, err
-	}
-	if a.Distances, err = m.Distances(ctx, DistanceQuery{Coverage: o.Coverage}); err != nil {
-		return nil, err
-	}
-	if a.Zones, err = m.Zones(ctx, ZoneQuery{ResolutionM: o.ResolutionM}); err != nil {
-		return nil, err
-	}
-	if a.Sections, err = m.housingSections(ctx, a.Distances, o.ResolutionM); err != nil {
+	// Each step fills its own fields, so that the steps of a stage can run side by
+	// side: what they come to does not depend on the order.
+	err := together(ctx,
+		func(ctx context.Context) (err error) {
+			a.Points, err = m.Field(ctx, m.site.Places)
+			return err
+		},
+		func(ctx context.Context) (err error) {
+			a.Distances, err = m.Distances(ctx, DistanceQuery{Coverage: o.Coverage})
+			return err
+		},
+		func(ctx context.Context) (err error) {
+			a.Zones, err = m.Zones(ctx, ZoneQuery{ResolutionM: o.ResolutionM})
+			return err
+		},
+	)
+	if err != nil {
 		return nil, err
 	}
 	if left := len(m.housings()) - mostSections; left > 0 {
 		a.Notices = append(a.Notices, fmt.Sprintf("Vertical sections are drawn through the %d housings whose boundary reaches farthest; %d other housings have none.", mostSections, left))
 	}
-	if a.BoundaryPoints, err = m.BoundaryPoints(ctx, a.Zones, a.Sections); err != nil {
-		return nil, err
-	}
-	if a.Grids, err = m.Grids(ctx, a.Zones, a.Sections); err != nil {
-		return nil, err
-	}
-	a.Profiles = m.Profiles(a.Distances)
-	if err := m.planned(ctx, a); err != nil {
+	err = together(ctx, append(m.planned(a),
+		func(ctx context.Context) (err error) {
+			if a.Sections, err = m.housingSections(ctx, a.Distances, o.ResolutionM); err != nil {
+				return err
+			}
+			if a.BoundaryPoints, err = m.BoundaryPoints(ctx, a.Zones, a.Sections); err != nil {
+				return err
+			}
+			a.Grids, err = m.Grids(ctx, a.Zones, a.Sections)
+			return err
+		},
+		func(context.Context) error {
+			a.Profiles = m.Profiles(a.Distances)
+			return nil
+		},
+	)...)
+	if err != nil {
 		return nil, err
 	}
 	return a, ctx.Err()
+}
+
+// together runs the steps side by side and returns the first error.
+func together(ctx context.Context, steps ...func(context.Context) error) error {
+	g, ctx := errgroup.WithContext(ctx)
+	for _, step := range steps {
+		g.Go(func() error { return step(ctx) })
+	}
+	return g.Wait()
 }
 
 func (m *Model) groundText() string {
@@ -108,13 +135,16 @@ func (m *Model) sharedFrequencies() []string {
 		by[s.FrequencyHz] = append(by[s.FrequencyHz], s.ID)
 	}
 	sort.Float64s(order)
-	var out []string
+	var groups []string
 	for _, f := range order {
 		if ids := by[f]; len(ids) > 1 {
-			out = append(out, fmt.Sprintf("Rows at the same frequency, %s, without a common signal add as powers: %s. If they carry one signal, give them one name in the column signal.", frequencyText(f), listText(ids)))
+			groups = append(groups, frequencyText(f)+": "+listText(ids))
 		}
 	}
-	return out
+	if len(groups) == 0 {
+		return nil
+	}
+	return []string{"Rows at one frequency without a common signal add as powers. If they carry one signal, give them one name in the column signal. " + strings.Join(groups, "; ") + "."}
 }
 
 // profilePoints is the number of distances of a profile, spaced evenly in their

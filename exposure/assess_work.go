@@ -5,28 +5,36 @@ import (
 	"sort"
 )
 
-// planned adds what an assessment says about work and about itself: a plan for
-// each place and surface that is above, the schedule of barriers, where to
-// measure first, what each assumption is worth, and the operating states.
-func (m *Model) planned(ctx context.Context, a *Assessment) (err error) {
-	if a.Work, err = m.workForAbove(ctx, a); err != nil {
-		return err
+// planned lists the steps that add what an assessment says about work and about
+// itself: a plan for each place and surface that is above, the schedule of
+// barriers, where to measure first, what each assumption is worth, and the
+// operating states. They need the places, distances and zones to be there.
+func (m *Model) planned(a *Assessment) []func(context.Context) error {
+	return []func(context.Context) error{
+		func(ctx context.Context) (err error) {
+			a.Work, err = m.workForAbove(ctx, a)
+			return err
+		},
+		func(ctx context.Context) (err error) {
+			if a.Boundaries, err = m.Schedule(ctx, a.Zones); err != nil {
+				return err
+			}
+			a.MeasureFirst, err = m.MeasureFirst(ctx, m.site.Places, a.Zones)
+			return err
+		},
+		func(ctx context.Context) (err error) {
+			few := m.site.Places
+			if len(few) > mostAssumptionPlaces {
+				few = m.largestPlaces(a.Points)
+			}
+			a.Assumptions, err = m.Assumptions(ctx, few, a.Distances)
+			return err
+		},
+		func(ctx context.Context) (err error) {
+			a.States, err = m.States(ctx)
+			return err
+		},
 	}
-	if a.Boundaries, err = m.Schedule(ctx, a.Zones); err != nil {
-		return err
-	}
-	if a.MeasureFirst, err = m.MeasureFirst(ctx, m.site.Places, a.Zones); err != nil {
-		return err
-	}
-	few := m.site.Places
-	if len(few) > mostAssumptionPlaces {
-		few = m.largestPlaces(a.Points)
-	}
-	if a.Assumptions, err = m.Assumptions(ctx, few, a.Distances); err != nil {
-		return err
-	}
-	a.States, err = m.States(ctx)
-	return err
 }
 
 // An assessment of many places asks what assumptions are worth only at those
