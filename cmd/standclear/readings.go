@@ -17,7 +17,7 @@ import (
 
 type readingsOptions struct {
 	siteFlags
-	unitsRow, strict bool
+	strict bool
 }
 
 func newReadings(std streams) *cobra.Command {
@@ -33,7 +33,6 @@ func newReadings(std streams) *cobra.Command {
 		},
 	}
 	o.register(c)
-	c.Flags().BoolVar(&o.unitsRow, "units-row", false, "the row below the header of readings and logs holds their units")
 	strictFlag(c, &o.strict)
 	c.AddCommand(newReadingsSheet(std))
 	return c
@@ -44,7 +43,6 @@ func runReadings(ctx context.Context, std streams, o readingsOptions, path strin
 	if err != nil {
 		return err
 	}
-	so.UnitsRow = o.unitsRow
 	site, measured, err := sitefile.LoadSurvey(path, so)
 	if err != nil {
 		return readError(path, err)

@@ -18,6 +18,7 @@ import (
 type siteFlags struct {
 	limits, patterns, state, ground string
 	json, quiet, windows1252        bool
+	unitsRow                        bool
 }
 
 func (f *siteFlags) register(c *cobra.Command) {
@@ -27,6 +28,7 @@ func (f *siteFlags) register(c *cobra.Command) {
 	c.Flags().StringVar(&f.patterns, "patterns", "", "folder `DIR` to look for pattern files in, beside the site's own")
 	c.Flags().StringVar(&f.state, "state", "", "`on` leaves out the rows on standby")
 	c.Flags().StringVar(&f.ground, "ground", "", "`METHOD` none, factor=1.6 or fresnel in place of the site's own")
+	c.Flags().BoolVar(&f.unitsRow, "units-row", false, "the row below the header of readings and logs holds their units")
 	c.Flags().BoolVar(&f.windows1252, "windows-1252", false, "read CSV files that are not Unicode as Windows-1252")
 }
 
@@ -35,7 +37,7 @@ func jsonFlag(c *cobra.Command, to *bool) {
 }
 
 func (f *siteFlags) options() (sitefile.Options, error) {
-	o := sitefile.Options{LimitsFile: f.limits, PatternsDir: f.patterns, Windows1252: f.windows1252}
+	o := sitefile.Options{LimitsFile: f.limits, PatternsDir: f.patterns, Windows1252: f.windows1252, UnitsRow: f.unitsRow}
 	switch f.state {
 	case "":
 	case "on":
