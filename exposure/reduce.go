@@ -61,7 +61,66 @@ func newWorkProblem(m *Model, r *rule, q *WorkQuery, places []Place) *workProble
 	for i := range places {
 		p.addPlace(&places[i], sets)
 	}
+	if q.Surface != "" {
+		p.margin = surfaceMargin
+		p.seed(sets)
+	}
 	return p
+}
+
+// Over a surface the optimizer aims lower than at places, by more than the
+// summitGap to which the search for the largest ratio bounds it, so that the
+// bound itself is within; it goes down to surfaceMarginMost where the search ends
+// with a wider bound.
+const (
+	surfaceMargin     = 1.25 * summitGap
+	surfaceMarginMost = 0.1
+)
+
+// A surface is sampled at seedSteps by seedSteps points before any plan is made,
+// and the seedRows largest of them become rows: the rounds in which the engine
+// adds what a plan had not seen are then few.
+const (
+	seedSteps = 48
+	seedRows  = 60
+)
+
+// seed adds the rows of a surface's largest sampled ratios.
+func (p *workProblem) seed(sets map[float64]*fieldSet) {
+	s := p.m.surface(p.q.Surface)
+	x0, y0, x1, y1 := math.Inf(1), math.Inf(1), math.Inf(-1), math.Inf(-1)
+	for _, v := range s.Outline[0] {
+		x0, x1, y0, y1 = math.Min(x0, v[0]), math.Max(x1, v[0]), math.Min(y0, v[1]), math.Max(y1, v[1])
+	}
+	e := p.m.evaluator(p.r, nil, p.m.groundFactor(s.GroundFactor), siteFrame, 1)
+	type spot struct {
+		at    Point
+		ratio float64
+	}
+	var spots []spot
+	for i := 0; i < seedSteps; i++ {
+		for j := 0; j < seedSteps; j++ {
+			at := Point{X: x0 + (x1-x0)*(float64(i)+0.5)/seedSteps, Y: y0 + (y1-y0)*(float64(j)+0.5)/seedSteps}
+			if !insidePolygon([2]float64{at.X, at.Y}, s.Outline) {
+				continue
+			}
+			best := spot{}
+			for _, h := range []float64{s.To, (s.From + s.To) / 2} {
+				at.Z = s.Z + h
+				if _, v := e.at(at); v > best.ratio {
+					best = spot{at, v}
+				}
+			}
+			if best.ratio > 0.5 {
+				spots = append(spots, best)
+			}
+		}
+	}
+	sort.SliceStable(spots, func(i, j int) bool { return spots[i].ratio > spots[j].ratio })
+	for _, t := range spots[:min(seedRows, len(spots))] {
+		pl := Place{ID: s.ID, At: Point{X: t.at.X, Y: t.at.Y, Z: s.Z}, From: s.From, To: s.To, Class: p.r.class, WallLoss: 1, On: s.ID}
+		p.addRow(&pl, p.m.fieldSet(&pl, sets), t.at.Z)
+	}
 }
 
 // addPlace adds the rows of a place: at the height of its largest ratio and, for
@@ -451,16 +510,19 @@ func (p *workProblem) confirmed(ctx context.Context, name string, solve func() (
 		}
 		if held && p.q.Surface != "" {
 			// The points found say so; the whole surface must as well.
-			within, reason, err := reduced.allWithin(ctx, p.q.Surface, p.r.class)
+			most, reason, err := reduced.mostOn(ctx, p.q.Surface, p.r.class)
 			if err != nil {
 				return nil, err
 			}
-			if !within {
-				held = false
-				p.margin = math.Max(2*p.margin, 1e-3)
-			}
-			if reason != "" {
+			switch {
+			case reason != "":
 				note = joinReasons(append([]string{"not assessed on " + p.q.Surface + " with this plan: " + reason}, notEmpty(note)...))
+			case most <= 1:
+			case p.margin < surfaceMarginMost && most < 1+2*surfaceMarginMost && touched(x): // a little lower may do
+				held = false
+				p.margin *= 2
+			default:
+				note = joinReasons(append([]string{fmt.Sprintf("no point of %s was found above 1; the search bounds the ratio there by %.3g", p.q.Surface, most)}, notEmpty(note)...))
 			}
 		}
 		if !held && round < mostRounds-1 {
@@ -486,27 +548,25 @@ func (p *workProblem) confirmed(ctx context.Context, name string, solve func() (
 	return nil, fmt.Errorf("the plan %q does not settle", name)
 }
 
-// allWithin reports whether every point of a surface is proved within for a
-// class: the outer line is empty.
-func (m *Model) allWithin(ctx context.Context, surface, class string) (within bool, reason string, err error) {
+// mostOn bounds a class's ratio from above over a whole surface; the reason says
+// why part of it is not assessed.
+func (m *Model) mostOn(ctx context.Context, surface, class string) (most float64, reason string, err error) {
 	r := m.rule(class)
-	top, err := m.largestOn(ctx, surface, r, summitDecided)
-	switch {
-	case err != nil:
-		return false, "", err
-	case top.reach != reached:
+	top, err := m.largestOn(ctx, surface, r, summitEffort)
+	if err == nil && top.reach != reached {
 		_, reason = zoneVerdict(&Zone{Share: 1}, r, top)
-		return true, reason, nil // what can be found is within; the rest is not assessed
-	case top.upper <= 1:
-		return true, "", nil
 	}
-	q := ZoneQuery{Surfaces: []string{surface}, ResolutionM: DefaultResolutionM, Share: 1}
-	regions, err := m.regions(&q)
-	if err != nil {
-		return false, "", err
+	return top.upper, reason, err
+}
+
+// touched reports whether a plan does anything.
+func touched(x []float64) bool {
+	for _, f := range x {
+		if f < 1 {
+			return true
+		}
 	}
-	z, _, _, err := m.lines(ctx, regions[0], r, &q)
-	return len(z.Outer) == 0, "", err
+	return false
 }
 
 func notEmpty(s string) []string {

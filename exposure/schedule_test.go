@@ -123,3 +123,19 @@ func TestStatesNameTheWorst(t *testing.T) {
 	assert.Equal(t, []WorstOfState{{"hatch", "worker"}, {"roof", "worker"}}, states[2].Worst)
 	assert.Empty(t, states[0].Worst)
 }
+
+// A plan for anywhere on a surface holds at every point of it: the largest ratio
+// of the roof with the plan is bounded below 1 by the search for it.
+func TestPlanHoldsOverASurface(t *testing.T) {
+	m := roofSite(t, 5, 6)
+	w, err := m.Work(context.Background(), WorkQuery{Surface: "roof", Class: "worker"})
+	require.NoError(t, err)
+	assert.Equal(t, Above, w.Verdict)
+	assert.InDelta(t, 4, float64(w.ExposureRatio), 0.08, "the search ends at two hundredths")
+	require.Len(t, w.Reductions, 3)
+	least := w.Reductions[0]
+	require.Len(t, least.Transmitters, 1)
+	assert.InDelta(t, (1-surfaceMargin)/4, least.Transmitters[0].Factor, 0.01, "inverse square at 1 m, less the margin")
+	assert.LessOrEqual(t, float64(least.ExposureRatio), 1.0)
+	assert.Empty(t, least.Note)
+}

@@ -208,7 +208,13 @@ func (m *Model) Work(ctx context.Context, q WorkQuery) (*Work, error) {
 		return w, nil
 	}
 	problem := newWorkProblem(m, r, &q, places)
-	for _, make := range []func(context.Context) (*Reduction, error){problem.leastPower, problem.equal, problem.fewestOff} {
+	for i, make := range []func(context.Context) (*Reduction, error){problem.leastPower, problem.equal, problem.fewestOff} {
+		if i > 0 && len(w.Reductions[0].Transmitters) == 0 {
+			same := w.Reductions[0] // nothing to do is the same for every plan
+			same.Plan = Plans()[i]
+			w.Reductions = append(w.Reductions, same)
+			continue
+		}
 		plan, err := make(ctx)
 		if err != nil {
 			return nil, err
