@@ -197,6 +197,7 @@ func sampleBoundaries(a *exposure.Assessment) {
 			a.Zones = append(a.Zones, z)
 		}
 	}
+	sampleSections(a, circle(8, 12.5, 3, false))
 	extents := func(d exposure.Distance, directions ...string) {
 		for k, name := range directions {
 			d.Kind, d.Direction, d.DistanceM, d.BracketM, d.Verdict = "extent", name, 14.271/float64(k+1), 0.05, exposure.Above
@@ -221,5 +222,45 @@ func sampleBoundaries(a *exposure.Assessment) {
 			}
 			a.Profiles = append(a.Profiles, p)
 		}
+	}
+}
+
+// sampleSections adds a vertical plane through two housings, and points of the
+// first boundary with their calculation.
+func sampleSections(a *exposure.Assessment, line exposure.Ring) {
+	for i := 0; i < len(a.Sources) && i < 4; i += 2 {
+		for j, class := range a.Classes {
+			// Toward 53.13 degrees from the y axis, so that 5 m along are 4 m of x and 3 of y.
+			s := exposure.Section{X1M: 2, Y1M: 5, X2M: 18, Y2M: 17, FromZM: 8, ToZM: 18}
+			z := exposure.Zone{Section: &s, Through: a.Sources[i].Source.Housing, Class: class, Share: 1, SurfaceAreaM2: 200, ResolutionM: 0.1, MaxRatioLower: 40, MaxRatioUpper: 44,
+				MaxAt: [3]float64{8.4, 9.8, 12.5}, Covered: true, Verdict: exposure.Above, Averaging: "peak", FromM: 8, ToM: 18}
+			if j == 0 {
+				z.Outer, z.OuterAreaM2 = exposure.MultiPolygon{{line}}, 28
+			} else {
+				z.Verdict, z.MaxRatioLower, z.MaxRatioUpper = exposure.Within, 0, 0.1
+			}
+			a.Sections = append(a.Sections, z)
+		}
+	}
+	for i := range a.Points {
+		p := a.Points[i]
+		b := exposure.BoundaryPoint{Surface: a.Site.Surfaces[0].ID, Share: 1, PointResult: p}
+		b.ID, b.Class, b.Place = "line "+fmt.Sprint(i+1), a.Classes[0], nil
+		b.Ratios = p.Ratios[:1]
+		b.Contributions = nil
+		for _, c := range p.Contributions {
+			c.Ratios = c.Ratios[:1]
+			b.Contributions = append(b.Contributions, c)
+		}
+		switch i {
+		case 0:
+			b.ID = "largest ratio"
+		case 1:
+			b.Note, b.Ratios, b.Contributions = "place line 2 lies at the centre of antenna A1: no field can be stated there", nil, nil
+		case 2:
+			b.OnEdge, b.Unlisted, b.UnlistedRatio = true, 1, b.Contributions[0].Ratios[0].ExposureRatio
+			b.Contributions = b.Contributions[1:]
+		}
+		a.BoundaryPoints = append(a.BoundaryPoints, b)
 	}
 }

@@ -65,7 +65,7 @@ func isNumber(kind excelize.CellType) bool {
 func TestSheetsStandInAReadersOrder(t *testing.T) {
 	_, f := sampleBook(t)
 	assert.Equal(t, []string{"Cautions", "Result", "Site", "Antennas", "Power", "Limits", "Levels", "Distances", "Distances by antenna", "Boundaries",
-		"Figures", "Places", "Contributions", "Along the beams", "Work plan", "Switching", "Barriers and signs", "Measure first", "Assumptions", "Operating states", "Methods", "Methods by column", "Inputs", "In antennas", "In places", "Sign-off"}, f.GetSheetList())
+		"Vertical sections", "Boundary points", "Figures", "Places", "Contributions", "Along the beams", "Work plan", "Switching", "Barriers and signs", "Measure first", "Assumptions", "Operating states", "Methods", "Methods by column", "Inputs", "In antennas", "In places", "Sign-off"}, f.GetSheetList())
 }
 
 // Every number stands under a header that names its unit, or says [1] for a

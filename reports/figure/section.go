@@ -108,6 +108,7 @@ func (m *chart) cutSurfaces(sec exposure.Section, ux, uy, long float64) {
 			}
 		}
 		slices.Sort(cuts)
+		var pieces [][]pt
 		for k := 0; k+1 < len(cuts); k += 2 {
 			l := m.clipped([]pt{{math.Max(cuts[k], 0), o.Z}, {math.Min(cuts[k+1], long), o.Z}})
 			if cuts[k] >= long || cuts[k+1] <= 0 || len(l) == 0 {
@@ -116,19 +117,34 @@ func (m *chart) cutSurfaces(sec exposure.Section, ux, uy, long float64) {
 			any = true
 			m.lines(l, stroke{width: 2.2, grey: 60})
 			m.clutter.lines(l, 0.5, false)
-			if k == 0 || cuts[k]-cuts[k-1] > 0.2*long {
-				a, b := l[0][0], l[0][len(l[0])-1]
-				var seats []pt
-				for _, t := range []float64{0.5, 0.3, 0.7, 0.15, 0.85} {
-					c := between(a, b, t)
-					seats = append(seats, pt{c[0], c[1] - 7}, pt{c[0], c[1] - 16}, pt{c[0], c[1] + 7})
-				}
-				m.tags = append(m.tags, tag{text: shorten(o.ID, 28), face: contourFace, seats: seats})
-			}
+			pieces = append(pieces, l[0])
 		}
+		m.nameCuts(shorten(o.ID, 28), pieces)
 	}
 	if any {
 		m.entries = append(m.entries, entry{lineSample(stroke{width: 2.2, grey: 60}), "surface, cut"})
+	}
+}
+
+// nameCuts names the longest piece of a cut surface, and every other that is
+// longer than its name twice over.
+func (m *chart) nameCuts(name string, pieces [][]pt) {
+	longest := 0
+	for i, l := range pieces {
+		if pathLength(l) > pathLength(pieces[longest]) {
+			longest = i
+		}
+	}
+	for i, l := range pieces {
+		if i != longest && pathLength(l) < 2*contourFace.width(name) {
+			continue
+		}
+		var seats []pt
+		for _, t := range []float64{0.5, 0.3, 0.7, 0.15, 0.85} {
+			c := between(l[0], l[len(l)-1], t)
+			seats = append(seats, pt{c[0], c[1] - 7}, pt{c[0], c[1] - 16}, pt{c[0], c[1] + 7})
+		}
+		m.tags = append(m.tags, tag{text: name, face: contourFace, seats: seats})
 	}
 }
 
