@@ -43,7 +43,7 @@
 // The resolution decides only how far apart Outer and Inner are: outside reactive
 // regions their difference shrinks in proportion to it. The same proposition holds
 // on a vertical section with points for columns. MaxRatioLower <= max R <=
-// MaxRatioUpper over the columns that every method reaches. A distance that
+// MaxRatioUpper over what every method reaches. A distance that
 // Distances returns as an extent is at least that of every p with R(p) > 1 in its
 // direction, and along a ray at least that of the last such p.
 //

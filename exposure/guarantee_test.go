@@ -50,7 +50,6 @@ type probe struct {
 	e        *evaluator
 	from, to float64
 	mean     bool
-	near     float64 // height where a random draw begins
 }
 
 func (s *madeSite) probe(m *Model, f *Surface) *probe {
