@@ -137,10 +137,14 @@ func (m *Model) housingSections(ctx context.Context, distances []Distance, resol
 	if resolution == 0 {
 		resolution = DefaultResolutionM
 	}
-	far := map[string]float64{}
+	far, rear := map[string]float64{}, map[string]float64{}
 	for _, d := range distances {
 		if d.Housing != "" {
 			far[d.Housing] = math.Max(far[d.Housing], d.DistanceM)
+			// Of extents by the compass any may lie behind.
+			if d.Direction != "front" && d.Direction != "up" && d.Direction != "down" && d.Direction != "left" && d.Direction != "right" {
+				rear[d.Housing] = math.Max(rear[d.Housing], d.DistanceM)
+			}
 		}
 	}
 	first := m.housings()
@@ -156,14 +160,14 @@ func (m *Model) housingSections(ctx context.Context, distances []Distance, resol
 			continue
 		}
 		sin, cos := math.Sincos(s.Pose.AzimuthRad)
-		back, ahead := 5+0.3*far[s.Housing], 5+1.3*far[s.Housing]
+		back, ahead := 5+math.Max(0.3*far[s.Housing], rear[s.Housing]), 8+1.3*far[s.Housing]
 		section := Section{
 			X1M: s.Position.X - back*sin, Y1M: s.Position.Y - back*cos,
 			X2M: s.Position.X + ahead*sin, Y2M: s.Position.Y + ahead*cos,
 			FromZM: math.Floor(s.Position.Z - 3 - 0.5*far[s.Housing]), ToZM: math.Ceil(s.Position.Z + 3 + 0.5*far[s.Housing]),
 		}
 		for _, f := range m.site.Surfaces {
-			if f.Z < s.Position.Z {
+			if f.Z < s.Position.Z && cutBy(&f, section) {
 				section.FromZM = math.Min(section.FromZM, math.Max(math.Floor(f.Z)-1, math.Floor(s.Position.Z-3-far[s.Housing])))
 			}
 		}
@@ -190,4 +194,17 @@ func (m *Model) housings() []*Source {
 		}
 	}
 	return out
+}
+
+// cutBy reports whether a section passes over a surface, to within a hundredth
+// of its length.
+func cutBy(f *Surface, s Section) bool {
+	const steps = 100
+	for k := 0; k <= steps; k++ {
+		t := float64(k) / steps
+		if insidePolygon([2]float64{s.X1M + t*(s.X2M-s.X1M), s.Y1M + t*(s.Y2M-s.Y1M)}, f.Outline) {
+			return true
+		}
+	}
+	return false
 }

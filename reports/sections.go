@@ -106,6 +106,7 @@ func (r *report) sections() {
 	r.write(page{
 		name: sheetSections, title: "Vertical sections", landscape: true,
 		intro: "A vertical plane through each housing, along the azimuth of its first row. The field on it is that of all sources, without a body: points of the plane are compared one by one. " +
+			"A plane through an antenna runs through its body: the largest ratio is found there, where nobody can stand, and may have no bound. " +
 			"Figures are on sheet " + sheetFigures + ", corners in settingout.csv.",
 		widths: widthsOf(sectionColumns), headRow: firstRow, filterTo: firstRow + rows,
 	}, func(s *sheet) {

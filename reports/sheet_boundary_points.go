@@ -8,12 +8,12 @@ import (
 )
 
 var boundaryPointColumns = []column{
-	{head: "boundary", width: 17}, {head: "class", width: 12}, {head: "point", width: 10},
+	{head: "boundary", width: 14}, {head: "class", width: 12}, {head: "point", width: 12},
 	{head: "x", unit: "m", width: 7, digits: cents, what: whatX},
 	{head: "y", unit: "m", width: 7, digits: cents, what: whatY},
 	{head: "z", unit: "m", width: 7, digits: cents, what: "height above the site datum at which E, S and the chain hold: that of the largest ratio over the body"},
 	{head: "antenna", width: 13},
-	{head: "method", width: 12},
+	{head: "method", width: 16},
 	{head: "distance", unit: "m", width: 8, digits: cents, what: "distance from the source's centre of radiation"},
 	{head: "azimuth off boresight", unit: "deg", width: 9, digits: tenths, what: "azimuth of the point in the antenna's frame"},
 	{head: "elevation", unit: "deg", width: 8, digits: tenths, what: "elevation of the point in the antenna's frame"},
@@ -23,7 +23,7 @@ var boundaryPointColumns = []column{
 	{head: "E", unit: "V/m", width: 7, digits: figures, what: "electric field strength of the source; on the total line of all sources", method: "OET65-3"},
 	{head: "S", unit: "W/m2", width: 8, digits: figures, what: "power density of the source; on the total line of all sources", method: "WAVE-2"},
 	{head: "ratio", unit: "1", width: 8, digits: figures, what: "the source's own exposure ratio; on the total line the engine's total", method: "RATIO-1"},
-	{head: "remark", width: 26},
+	{head: "remark", width: 24},
 }
 
 // boundaryPoints writes the calculation at points of each boundary, for an
@@ -33,6 +33,7 @@ func (r *report) boundaryPoints() {
 		name: sheetChecks, title: "Boundaries: points to check by hand", landscape: true,
 		intro: "For each boundary on a surface the place of the largest ratio and twelve points spread evenly along the keep-out line, away from the surface's own edge where some of the line runs there. " +
 			"On such a point the ratio is that of the line, or a little below: the line encloses the boundary. Each source is written out from distance to ratio; those below 0.001 are only counted. " +
+			"A total that is not the plain sum is the engine's: there rows share a signal, and add in amplitude, or a body mean is compared. " +
 			"The points of the vertical sections are in results.json.",
 		widths: widthsOf(boundaryPointColumns), headRow: firstRow,
 	}, func(s *sheet) {
@@ -64,7 +65,7 @@ func (r *report) boundaryPoint(s *sheet, p *exposure.BoundaryPoint) {
 			sum += float64(c.Ratios[0].ExposureRatio)
 			line = append(line, c.PowerW, c.GroundFactor, c.EVPerM, c.SWPerM2, c.Ratios[0].ExposureRatio)
 		}
-		s.line(line...)
+		s.line(append(line, nil)...)
 	}
 	total := p.Ratios[0]
 	remark := ""

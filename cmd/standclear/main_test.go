@@ -118,29 +118,44 @@ func TestHelpExamplesRun(t *testing.T) {
 	})
 }
 
-// TestInterruptLeavesNothing interrupts the main job while it computes: exit
-// status 1, one line, and no folder or file that was not there before.
+// TestInterruptLeavesNothing interrupts commands that write while they compute:
+// exit status 1, one line, and no folder or file that was not there before.
 func TestInterruptLeavesNothing(t *testing.T) {
 	if testing.Short() {
 		t.Skip("starts the main job")
 	}
-	dir := t.TempDir()
 	// A line every centimetre takes far longer than the wait before the signal.
-	cmd := exec.Command("standclear", "assess", "--demo", "-o", "out", "--resolution", "0.01", "--quiet")
-	cmd.Dir = dir
-	var out, errOut bytes.Buffer
-	cmd.Stdout, cmd.Stderr = &out, &errOut
-	require.NoError(t, cmd.Start())
-	time.Sleep(500 * time.Millisecond)
-	require.NoError(t, cmd.Process.Signal(os.Interrupt))
-	var exit *exec.ExitError
-	require.ErrorAs(t, cmd.Wait(), &exit)
-	assert.Equal(t, exitFailed, exit.ExitCode())
-	assert.Empty(t, out.String())
-	assert.Equal(t, "standclear: interrupted; nothing was written, run it again when ready\n", errOut.String())
-	left, err := os.ReadDir(dir)
-	require.NoError(t, err)
-	assert.Empty(t, left)
+	for _, args := range [][]string{
+		{"assess", "--demo", "-o", "out", "--resolution", "0.01", "--quiet"},
+		{"zone", "mysite", "-o", "out", "--resolution", "0.005", "--quiet"},
+		{"distance", "mysite", "--coverage", "95%", "--quiet"},
+	} {
+		t.Run(args[0], func(t *testing.T) {
+			dir := t.TempDir()
+			if args[1] == "mysite" {
+				made := exec.Command("standclear", "init", "--demo", "mysite")
+				made.Dir = dir
+				require.NoError(t, made.Run())
+			}
+			before, err := os.ReadDir(dir)
+			require.NoError(t, err)
+			cmd := exec.Command("standclear", args...)
+			cmd.Dir = dir
+			var out, errOut bytes.Buffer
+			cmd.Stdout, cmd.Stderr = &out, &errOut
+			require.NoError(t, cmd.Start())
+			time.Sleep(500 * time.Millisecond)
+			require.NoError(t, cmd.Process.Signal(os.Interrupt))
+			var exit *exec.ExitError
+			require.ErrorAs(t, cmd.Wait(), &exit)
+			assert.Equal(t, exitFailed, exit.ExitCode())
+			assert.Empty(t, out.String())
+			assert.Equal(t, "standclear: interrupted; nothing was written, run it again when ready\n", errOut.String())
+			left, err := os.ReadDir(dir)
+			require.NoError(t, err)
+			assert.Len(t, left, len(before))
+		})
+	}
 }
 
 // TestWordsOfHelp: no help promises what the program cannot know.
