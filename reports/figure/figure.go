@@ -103,8 +103,10 @@ func (f *Figure) PNG() (b []byte, err error) {
 }
 
 func (s *sheet) replay(c vg.Canvas) {
-	c.SetColor(grey(255))
-	c.Fill(path([][]pt{Box{0, 0, s.w, s.h}.ring()}, true))
+	if _, raster := c.(*vgimg.Canvas); !raster { // a raster page is white from the start
+		c.SetColor(grey(255))
+		c.Fill(path([][]pt{Box{0, 0, s.w, s.h}.ring()}, true))
+	}
 	c.Push()
 	c.Translate(vp(pt{0, s.h})) // the drawing hangs down from y = 0
 	for _, op := range s.ops {
