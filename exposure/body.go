@@ -199,8 +199,9 @@ func (t *evalTerm) meanOver(r *rule, g int, x, y, from, to float64) float64 {
 }
 
 // meansOver is the mean of a term's ratios over the body, by group:
-// Gauss-Legendre with four points on halves until two levels agree to 1e-5. The
-// finer level's error falls as 2^-8, so what is returned is good to 1e-7.
+// Gauss-Legendre with four points on halves until two levels agree to 1e-5. It is
+// good to 1e-7 where the ratio is smooth, and to a few 1e-4 where a sampled
+// pattern has kinks, which bodyGap covers in a verdict.
 func (t *evalTerm) meansOver(r *rule, x, y, from, to float64) groupRatios {
 	n := len(t.w)
 	rule := func(a, b float64) (sum groupRatios) {

@@ -48,6 +48,7 @@ type straightener struct {
 	cell      float64
 	tolerance float64
 	sign      float64
+	runs      []int // scratch of candidates
 }
 
 func (s *straightener) key(p latticePoint) [2]int32 {
@@ -74,15 +75,10 @@ func (s *straightener) ring(r int, fixed []bool) []latticePoint {
 	var out []latticePoint
 	for i := 0; i < n; {
 		best := 1
-		for run := 2; run <= longestRun && i+run <= n; run++ {
-			if fixed != nil && fixed[(start+i+run-1)%n] {
-				break
-			}
-			ok, hopeless := s.chord(r, start+i, run)
-			if ok {
-				best = run
-			}
-			if hopeless {
+		runs := s.candidates(ring, start+i, min(longestRun, n-i), fixed)
+		for k := len(runs) - 1; k >= 0; k-- {
+			if s.chord(r, start+i, runs[k]) {
+				best = runs[k]
 				break
 			}
 		}
@@ -95,35 +91,68 @@ func (s *straightener) ring(r int, fixed []bool) []latticePoint {
 	return out
 }
 
-// chord tests the chord over run edges from vertex i. hopeless means that no
-// longer run from i can pass the distance test soon.
-func (s *straightener) chord(r, i, run int) (ok, hopeless bool) {
+// candidates lists the runs from vertex i whose chord may pass the distance
+// test: the directions that keep every vertex passed on the region's side and
+// within tolerance form a cone, which only narrows.
+func (s *straightener) candidates(ring []latticePoint, i, longest int, fixed []bool) []int {
+	n := len(ring)
+	a := ring[i%n]
+	s.runs = s.runs[:0]
+	lo, hi := -math.Pi/2, math.Pi/2
+	var first float64
+	for run := 1; run <= longest; run++ {
+		p := ring[(i+run)%n]
+		dx, dy := p.x-a.x, p.y-a.y
+		angle := fastAtan2(dy, dx)
+		if run == 1 {
+			first = angle
+		}
+		angle = math.Remainder(angle-first, 2*math.Pi)
+		const slack = 1e-9
+		if run > 1 && angle >= lo-slack && angle <= hi+slack {
+			s.runs = append(s.runs, run)
+		}
+		if fixed != nil && fixed[(i+run)%n] {
+			break // the line follows the outline there
+		}
+		// Outward: the vertex lies left of the chord, at most tolerance away.
+		stray := math.Pi
+		if d := math.Hypot(dx, dy); d > s.tolerance {
+			stray = math.Asin(s.tolerance / d)
+		}
+		if s.sign > 0 {
+			lo, hi = math.Max(lo, angle-stray), math.Min(hi, angle)
+		} else {
+			lo, hi = math.Max(lo, angle), math.Min(hi, angle+stray)
+		}
+		if lo > hi+slack {
+			break
+		}
+	}
+	return s.runs
+}
+
+// chord tests the chord over run edges from vertex i.
+func (s *straightener) chord(r, i, run int) bool {
 	ring := s.rings[r]
 	n := len(ring)
 	a, b := ring[i%n], ring[(i+run)%n]
 	dx, dy := b.x-a.x, b.y-a.y
 	length := math.Hypot(dx, dy)
 	if length == 0 {
-		return false, false
+		return false
 	}
 	lox, hix := math.Min(a.x, b.x), math.Max(a.x, b.x)
 	loy, hiy := math.Min(a.y, b.y), math.Max(a.y, b.y)
-	ok = true
 	for k := 1; k < run; k++ {
 		p := ring[(i+k)%n]
 		off := s.sign * (dx*(p.y-a.y) - dy*(p.x-a.x)) / length
-		if off > 4*s.tolerance || off < -4*s.tolerance {
-			hopeless = true
-		}
 		along := (dx*(p.x-a.x) + dy*(p.y-a.y)) / length
 		if off < 0 || off > s.tolerance || along < 0 || along > length {
-			ok = false
+			return false
 		}
 		lox, hix = math.Min(lox, p.x), math.Max(hix, p.x)
 		loy, hiy = math.Min(loy, p.y), math.Max(hiy, p.y)
-	}
-	if !ok {
-		return false, hopeless
 	}
 	// No other vertex may lie in the pocket.
 	pocket := make([]latticePoint, run+1)
@@ -140,12 +169,12 @@ func (s *straightener) chord(r, i, run int) (ok, hopeless bool) {
 					}
 				}
 				if inPocket(pocket, s.rings[v.ring][v.at]) {
-					return false, false
+					return false
 				}
 			}
 		}
 	}
-	return true, false
+	return true
 }
 
 // inPocket reports whether q lies in or on the closed polygon.

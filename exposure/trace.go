@@ -36,7 +36,13 @@ type directed struct{ from, to latticePoint }
 // the finest cell, region on the left. Work grows with the number of leaves,
 // not with the area.
 func trace(leaves []leaf, outline []latticeEdge, g grain, pick func(leaf) bool) [][]latticePoint {
-	var vertical, horizontal []edgeEvent
+	count := 0
+	for _, l := range leaves {
+		if pick(l) {
+			count++
+		}
+	}
+	vertical, horizontal := make([]edgeEvent, 0, 4*count), make([]edgeEvent, 0, 4*count)
 	var edges []directed
 	side := func(a, b latticePoint) {
 		switch {
@@ -94,10 +100,17 @@ func trace(leaves []leaf, outline []latticeEdge, g grain, pick func(leaf) bool) 
 // cancel, one edge for each run of one sign.
 func remaining(events []edgeEvent, edge func(line, a, b float64) directed) []directed {
 	slices.SortFunc(events, func(a, b edgeEvent) int {
-		if c := cmp.Compare(a.line, b.line); c != 0 {
-			return c
+		switch { // nothing is NaN here
+		case a.line < b.line:
+			return -1
+		case a.line > b.line:
+			return 1
+		case a.pos < b.pos:
+			return -1
+		case a.pos > b.pos:
+			return 1
 		}
-		return cmp.Compare(a.pos, b.pos)
+		return 0
 	})
 	var out []directed
 	for i := 0; i < len(events); {
