@@ -291,6 +291,17 @@ func (e *expansion) terms(g *ring) (square, first, second float64) {
 	return square, first, size * size
 }
 
+// elementMost bounds every element's amplitude over a ring: none sees it nearer
+// its horizon than an element at the line's near end would see the ring's far
+// side.
+func (e *array) elementMost(g *ring) float64 {
+	z, _ := g.heights(0)
+	if z -= e.half; z <= 0 {
+		return 1
+	}
+	return math.Min(1, element(z/(math.Sqrt(z*z+g.rhi*g.rhi)+g.rhi))+2*tableError)
+}
+
 // overRing bounds both sums by their first-order expansion about the ring's
 // centre and the most that the second order can be. The phase of the middle is
 // taken out: wave n then changes by k (u_n - u_0) a metre in phase. The second
@@ -304,7 +315,7 @@ func (e *array) overRing(g *ring, phi antenna.Interval) densityRange {
 	}
 	h := e.towardRange(g, phi)
 	d, a := g.radius, e.amplitude
-	all := a * float64(len(e.z)) / near
+	all := a * float64(len(e.z)) / near * e.elementMost(g)
 	coarse := densityRange{Hi: density{h.Hi * all * all, h.Hi * all * all}}
 	r0 := math.Sqrt(g.rho*g.rho + g.z*g.z)
 	if e.k*e.half*d > 2*r0 {

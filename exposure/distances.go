@@ -21,7 +21,7 @@ import (
 const (
 	extentFine, extentFineM     = 1e-3, 0.005
 	extentCoarse, extentCoarseM = 5e-3, 0.02
-	extentCheap, extentMost     = 1500, 9_000
+	extentCheap, extentMost     = 1500, 12_000
 )
 
 // target is what a distance is measured from: a row, a housing or all.
