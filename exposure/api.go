@@ -22,8 +22,8 @@ type DistanceQuery struct {
 	Coverage *Coverage
 }
 
-// RayDirection is a direction in space: azimuth clockwise from the site's y
-// axis, elevation above the horizon, in rad.
+// RayDirection is a direction in space: azimuth clockwise from true north,
+// elevation above the horizon, in rad.
 type RayDirection struct{ AzimuthRad, ElevationRad float64 }
 
 // ZoneQuery asks for boundaries.

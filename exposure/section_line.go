@@ -8,11 +8,11 @@ import "math"
 const sectionMarginM = 10
 
 // SectionThrough returns the vertical plane through a point of the site's x-y
-// plane (m) along an azimuth (rad, clockwise from the site's y axis), as long as
+// plane (m) along an azimuth (rad, clockwise from true north), as long as
 // the site: to a margin past the outermost antenna or surface on either side.
 // Its heights are left to Zones to choose.
 func SectionThrough(site *Site, x, y, azimuthRad float64) Section {
-	sin, cos := math.Sincos(azimuthRad)
+	sin, cos := math.Sincos(azimuthRad - site.About.GridBearingRad)
 	back, ahead := 0.0, 0.0
 	reach := func(px, py float64) {
 		along := (px-x)*sin + (py-y)*cos

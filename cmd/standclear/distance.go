@@ -30,7 +30,7 @@ func newDistance(std streams) *cobra.Command {
 		RunE: func(cmd *cobra.Command, args []string) error { return runDistance(cmd.Context(), std, o, args[0]) },
 	}
 	o.register(c)
-	c.Flags().StringVar(&o.direction, "direction", "", "outermost crossing along `AZIMUTH,ELEVATION` in degrees (azimuth clockwise from the site's y axis) in place of the six extents")
+	c.Flags().StringVar(&o.direction, "direction", "", "outermost crossing along `AZIMUTH,ELEVATION` in degrees (azimuth clockwise from true north) in place of the six extents")
 	c.Flags().StringSliceVar(&o.of, "of", nil, "`WHICH` of rows, housings, all; everything where left out")
 	c.Flags().StringVar(&o.coverage, "coverage", "", "tell too the distance that covers this `SHARE` of what the data's standard uncertainties allow, such as 95%")
 	c.Flags().Uint64Var(&o.seed, "seed", exposure.DefaultSeed, "`SEED` of the draws of --coverage")
