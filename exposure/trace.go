@@ -99,19 +99,7 @@ func trace(leaves []leaf, outline []latticeEdge, g grain, pick func(leaf) bool) 
 // remaining sums the sides along each grid line and returns what does not
 // cancel, one edge for each run of one sign.
 func remaining(events []edgeEvent, edge func(line, a, b float64) directed) []directed {
-	slices.SortFunc(events, func(a, b edgeEvent) int {
-		switch { // nothing is NaN here
-		case a.line < b.line:
-			return -1
-		case a.line > b.line:
-			return 1
-		case a.pos < b.pos:
-			return -1
-		case a.pos > b.pos:
-			return 1
-		}
-		return 0
-	})
+	events = byLine(events)
 	var out []directed
 	for i := 0; i < len(events); {
 		line := events[i].line
@@ -140,6 +128,55 @@ func remaining(events []edgeEvent, edge func(line, a, b float64) directed) []dir
 		}
 	}
 	return out
+}
+
+// byLine sorts events by line and position. Nearly all lie on lines of the
+// lattice, which are whole numbers: those are dealt into their lines first, so
+// that only the few of one line are left to compare.
+func byLine(events []edgeEvent) []edgeEvent {
+	compare := func(a, b edgeEvent) int {
+		switch { // nothing is NaN here
+		case a.line < b.line:
+			return -1
+		case a.line > b.line:
+			return 1
+		case a.pos < b.pos:
+			return -1
+		case a.pos > b.pos:
+			return 1
+		}
+		return 0
+	}
+	most := 0.0
+	for i := range events {
+		most = math.Max(most, events[i].line)
+		if events[i].line < 0 {
+			most = math.Inf(1)
+		}
+	}
+	if !(most <= 4*float64(len(events))+1024) {
+		slices.SortFunc(events, compare)
+		return events
+	}
+	// start[k] is where the events of [k, k+1) begin.
+	start := make([]int32, int(most)+2)
+	for i := range events {
+		start[int(events[i].line)+1]++
+	}
+	for k := 1; k < len(start); k++ {
+		start[k] += start[k-1]
+	}
+	next := slices.Clone(start)
+	sorted := make([]edgeEvent, len(events))
+	for i := range events {
+		k := int(events[i].line)
+		sorted[next[k]] = events[i]
+		next[k]++
+	}
+	for k := 0; k+1 < len(start); k++ {
+		slices.SortFunc(sorted[start[k]:start[k+1]], compare)
+	}
+	return sorted
 }
 
 // link follows the edges into closed rings and splits rings that touch
