@@ -31,9 +31,9 @@ func TestReadmeShowsTheDemo(t *testing.T) {
 	text, e := os.ReadFile(readme)
 	require.NoError(t, e)
 	before, rest, ok := strings.Cut(string(text), begin)
-	require.True(t, ok, "the README has no place for the transcript")
+	require.True(t, ok, "the README has no place for what the demo prints")
 	shown, after, ok := strings.Cut(rest, end)
-	require.True(t, ok, "the README's transcript has no end")
+	require.True(t, ok, "what the README shows has no end")
 	if os.Getenv("STANDCLEAR_README") == "write" {
 		require.NoError(t, os.WriteFile(readme, []byte(before+begin+out.String()+end+after), 0o644))
 		require.NoError(t, os.WriteFile(figure, plan, 0o644))
