@@ -114,7 +114,10 @@ func (e *evaluator) tallest(g int, base, x, y, from, to float64, skipMean bool) 
 	at, best = climb(value, at, best, from, to, (to-from)/looks)
 	type part struct{ lo, hi float64 }
 	work := []part{{from, to}}
-	for len(work) > 0 {
+	for bounds := 0; len(work) > 0; bounds++ {
+		if bounds > mostBodyBounds {
+			return e.sampled(value, at, best, from, to)
+		}
 		p := work[len(work)-1]
 		work = work[:len(work)-1]
 		most := base + e.peaksOver(box{c: Point{X: x, Y: y}}.heights(p.lo, p.hi), skipMean)[g]
@@ -128,6 +131,23 @@ func (e *evaluator) tallest(g int, base, x, y, from, to float64, skipMean bool) 
 		work = append(work, part{p.lo, mid}, part{mid, p.hi})
 	}
 	return at, best
+}
+
+// mostBodyBounds ends a search whose bounds do not close: those of two rays over
+// ground on an array, which are sums of amplitudes.
+const mostBodyBounds = 1000
+
+// sampled looks at every centimetre of the body, far finer than the fringes of
+// any wave it is used for, and improves the best.
+func (e *evaluator) sampled(value func(float64) float64, at, best, from, to float64) (float64, float64) {
+	n := int(math.Ceil((to - from) / 0.01))
+	for k := 1; k < n; k++ {
+		z := from + (to-from)*float64(k)/float64(n)
+		if v := value(z); v > best {
+			at, best = z, v
+		}
+	}
+	return climb(value, at, best, from, to, 0.02)
 }
 
 // climb improves a height by steps that halve where they find nothing better.

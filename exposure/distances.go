@@ -333,7 +333,7 @@ func (m *Model) unsure(r *rule, members []int) string {
 	return joinReasons(why)
 }
 
-func degrees(rad float64) float64 { return nano(rad * 180 / math.Pi) }
+func degrees(rad float64) float64 { return nano(rad*180/math.Pi) + 0 } // + 0: never -0
 
 // bearing brings an angle in rad into [0, 360) deg.
 func bearing(rad float64) float64 {
