@@ -174,6 +174,7 @@ type Zone struct {
 	// SimplifiedM2 is the area that straightening the lines added to the outer
 	// and took from the inner polygon; both are part of the areas above.
 	OuterAddedM2   float64 `json:"outer_added_m2"`
+	BandM          float64 `json:"band_m"` // mean width between the outer and the inner line
 	InnerRemovedM2 float64 `json:"inner_removed_m2"`
 	// LowestM and HighestM bound the heights, above the datum, at which the
 	// ratio may exceed the share over the surface.

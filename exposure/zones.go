@@ -247,6 +247,7 @@ func (m *Model) lines(ctx context.Context, g region, r *rule, q *ZoneQuery) (Zon
 			z.Inner, z.InnerRemovedM2 = p.polygons(leaves, func(l leaf) bool { return l.kind == innerToo }, q.ResolutionM/4, false)
 		})
 	z.OuterAreaM2, z.InnerAreaM2 = z.Outer.Area(), z.Inner.Area()
+	z.BandM = z.band()
 	return z, e, p, ctx.Err()
 }
 

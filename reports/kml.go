@@ -41,8 +41,8 @@ func KML(a *exposure.Assessment) ([]byte, error) {
 		}
 		volumes.Append(kml.Placemark(
 			kml.Name(oneLine(fmt.Sprintf("%s, class %s", z.Surface, z.Class))),
-			kml.Description(fmt.Sprintf("Keep-out volume from %.2f m to %.2f m above the datum; the line encloses the model's boundary to within %s m. Verdict: %s.",
-				s.Z+z.FromM, s.Z+z.ToM, significant(z.ResolutionM, 2), verdictFull(zoneVerdict(z), z.Reason))),
+			kml.Description(fmt.Sprintf("Keep-out volume from %.2f m to %.2f m above the datum; the line %s. Verdict: %s.",
+				s.Z+z.FromM, s.Z+z.ToM, z.Encloses(), verdictFull(zoneVerdict(z), z.Reason))),
 			kml.StyleURL("#keep-out"),
 			// One class at a time can be seen: the others are switched on by hand.
 			kml.Visibility(z.Class == s.Class),
@@ -63,8 +63,8 @@ func KML(a *exposure.Assessment) ([]byte, error) {
 				}
 				folder.Append(kml.Placemark(
 					kml.Name(oneLine(fmt.Sprintf("%s, class %s", cutName(z), z.Class))),
-					kml.Description(fmt.Sprintf("Keep-out line on the vertical plane from %.2f m to %.2f m above the datum; it encloses the model's boundary to within %s m. Verdict: %s.",
-						c.section.FromZM, c.section.ToZM, significant(z.ResolutionM, 2), verdictFull(zoneVerdict(z), z.Reason))),
+					kml.Description(fmt.Sprintf("Keep-out line on the vertical plane from %.2f m to %.2f m above the datum; it %s. Verdict: %s.",
+						c.section.FromZM, c.section.ToZM, z.Encloses(), verdictFull(zoneVerdict(z), z.Reason))),
 					kml.StyleURL("#keep-out"),
 					// Planes through every housing hide one another: they are
 					// switched on by hand, but for the one that was asked for.

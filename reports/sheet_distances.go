@@ -156,7 +156,7 @@ var boundaryColumns = []column{
 	{head: "ratio at least", unit: "1", width: 8, digits: figures, what: "largest exposure ratio on the surface: the lower bound", method: "BOUND-1"},
 	{head: "ratio at most", unit: "1", width: 8, digits: figures, what: "largest exposure ratio on the surface: the upper bound", method: "BOUND-1"},
 	{head: "share of limit", unit: "1", width: 7, digits: cents, what: "the exposure ratio that the line is drawn for"},
-	{head: "resolution", unit: "m", width: 9, digits: millis, what: "the keep-out line encloses the model's boundary to within this distance", method: "BOUND-1"},
+	{head: "resolution", unit: "m", width: 9, digits: millis, what: "the finest step of the search: the keep-out line encloses the model's boundary to within this distance where the largest over the body is compared, less closely where a mean is", method: "BOUND-1"},
 	{head: "from", unit: "m", width: 7, digits: cents, what: "height above the surface at which the body begins"},
 	{head: "to", unit: "m", width: 7, digits: cents, what: "height above the surface at which the body ends"},
 	{head: "added by straightening", unit: "m2", width: 11, digits: figures, what: "area that straightening the keep-out line added; part of the keep-out area", method: "BOUND-1"},
@@ -165,7 +165,7 @@ var boundaryColumns = []column{
 
 // boundaries writes the keep-out areas of every surface and class.
 func (r *report) boundaries() {
-	intro := "Keep-out lines enclose the model's boundary to within the resolution. Their corners are in settingout.csv, zones.geojson and zones.kml."
+	intro := "Keep-out lines enclose the model's boundary: to within the resolution where the largest over the body is compared, less closely where a mean is. Their corners are in settingout.csv, zones.geojson and zones.kml."
 	if len(r.pictures) > 0 {
 		intro += " Plans are on sheet " + sheetFigures + "."
 	}

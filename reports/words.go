@@ -17,7 +17,7 @@ var Cautions = []string{
 	"This report is a prediction. It rests on the antenna data, positions, powers and limit table that were supplied, and it is as good as they are. It is no permit to enter any area, and it does not replace the judgement of a licensed assessor or the local rules, which govern.",
 	"Only the sources in the inventory are counted. A transmitter that nobody listed, a changed tilt, a new feeder or a faulty pattern file changes the result, and the report cannot know of it.",
 	"\"Within\" and \"above\" mean within and above the limits supplied, at the place and for the class of people named. \"Not assessed\" is not \"within\": it means that the data or the methods do not reach, and that measurement or better data are needed.",
-	"A keep-out line encloses the model's boundary to within the resolution that is printed with it. The model is not the site: metal structures, reflections that were not modelled, and people carrying long conducting objects can raise fields beyond it.",
+	"A keep-out line encloses the model's boundary, as closely as is printed with it. The model is not the site: metal structures, reflections that were not modelled, and people carrying long conducting objects can raise fields beyond it.",
 	"Contact currents, induced currents in structures, effects on implanted devices, on fuel vapours and on electrically fired devices are not covered. Wearers of implants need advice of their own.",
 	"Close to an antenna, within its reactive region, fields are not predicted. Nobody should touch or pass in front of a transmitting antenna, whatever a line on a plan says.",
 	"A switched-off transmitter counts as off only while its operator holds it off. The report does not know the state of any transmitter on the day.",

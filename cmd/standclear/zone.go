@@ -220,7 +220,7 @@ func printZones(std streams, zones []exposure.Zone, out string) error {
 		if out != "" {
 			where = "Figures, map files and the setting-out list are in " + quoted(out) + "."
 		}
-		fmt.Fprintf(std.out, "\nThe keep-out line encloses the model's boundary to within %s m. %s\n", plain(zones[0].ResolutionM), where)
+		fmt.Fprintf(std.out, "\nThe keep-out line %s. %s\n", exposure.LoosestLine(zones).Encloses(), where)
 	}
 	for _, z := range zones {
 		if z.Reason != "" {

@@ -60,12 +60,11 @@ func (m *chart) panel(extent Box, side bool) {
 
 // resolutionSentence says what the lines of the figure mean.
 func (m *chart) resolutionSentence() string {
-	res, share, level, any := 0.0, 1.0, "", false
+	share, level, any := 1.0, "", false
 	for _, z := range m.zones {
 		if len(z.Outer) > 0 {
 			any = true
 		}
-		res = math.Max(res, z.ResolutionM)
 		if z.Share > 0 {
 			share = z.Share
 		}
@@ -76,7 +75,7 @@ func (m *chart) resolutionSentence() string {
 	if !any {
 		return ""
 	}
-	t := fmt.Sprintf("Keep-out line: encloses the model's boundary to within %s m", length(res))
+	t := "Keep-out line: " + exposure.LoosestLine(m.zones).Encloses()
 	switch {
 	case level != "":
 		t += " (boundary of " + level + ")"
